@@ -24,6 +24,10 @@ export function instantMs(at: Instant): number {
   return Date.parse(at)
 }
 
+export function addMinutes(at: Instant, minutes: number): Instant {
+  return toInstant(instantMs(at) + minutes * MINUTE_MS)
+}
+
 export function addSeconds(at: Instant, seconds: number): Instant {
   return toInstant(instantMs(at) + seconds * 1000)
 }

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { addDays, day, daysBetween } from '#shared/time/day'
 import {
+  addMinutes,
   addSeconds,
   dayAt,
   Instant,
@@ -22,6 +23,7 @@ describe('instants', () => {
     expect(InstantInput.safeParse('2026-02-30T09:30:00Z').success).toBe(false)
     expect(InstantInput.safeParse('2026-05-01').success).toBe(false)
     expect(addSeconds(at('2026-12-31T23:30:00Z'), 2700)).toBe('2027-01-01T00:15:00.000Z')
+    expect(addMinutes(at('2026-12-31T23:30:00Z'), -1)).toBe('2026-12-31T23:29:00.000Z')
     expect(instantMs(toInstant(1234))).toBe(1234)
   })
 
