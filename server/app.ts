@@ -1,0 +1,62 @@
+import compression from 'compression'
+import express, { type Express, type Router } from 'express'
+import { rateLimit } from 'express-rate-limit'
+import { speakPlainly } from '#shared/http/messages'
+import type { Deps } from './deps.ts'
+import { AppError, notFound } from './errors.ts'
+import { errorHandler } from './http/error-handler.ts'
+import { securityHeaders } from './http/headers.ts'
+import { health } from './http/health.ts'
+import { jsonBodies } from './http/json.ts'
+import { originCheck } from './http/origin-check.ts'
+import { knowMember, sessionCookie } from './http/sessions.ts'
+import { staticClient } from './http/static.ts'
+import { docsRoutes } from './routes/docs.ts'
+import { sessionRoutes } from './routes/session.ts'
+
+export interface AppOptions {
+  sessionSecret: string
+  trustProxy?: number
+  /** Serves the client in place of the built files (Vite in development). */
+  client?: Router | express.RequestHandler
+  dev?: boolean
+}
+
+/** The whole application: order of middleware, routes, the error handler. Never listens. */
+export function createApp(deps: Deps, options: AppOptions): Express {
+  speakPlainly()
+  const app = express()
+  app.disable('x-powered-by')
+  app.set('trust proxy', options.trustProxy ?? 0)
+  app.set('query parser', 'simple')
+  app.use(securityHeaders({ https: deps.appUrl.startsWith('https:'), dev: options.dev ?? false }))
+  app.use(health(deps))
+  app.use(compression({ threshold: 1024 }))
+  app.use('/api', originCheck(deps.appUrl), jsonBodies, sessionCookie(deps, options.sessionSecret), knowMember(deps))
+  app.use('/api/session', signInLimit)
+  app.use('/api', docsRoutes(), ...apiRoutes(deps))
+  app.use('/api', () => {
+    throw notFound('That address')
+  })
+  app.use(options.client ?? staticClient())
+  app.use(errorHandler(deps))
+  return app
+}
+
+/** Every domain's routes, in no particular order: paths do not overlap. */
+const apiRoutes = (deps: Deps): Router[] => [sessionRoutes(deps)]
+
+/** Per address; per account it is counted in the database (http/sign-in-throttle). */
+const signInLimit = rateLimit({
+  windowMs: 15 * 60_000,
+  limit: 30,
+  skip: (req) => req.method !== 'POST',
+  skipSuccessfulRequests: true,
+  standardHeaders: false,
+  legacyHeaders: false,
+  handler: () => {
+    throw new AppError('too-many', 'Too many tries from here. Wait a quarter of an hour, then try again.', {
+      retryAfterSeconds: 900,
+    })
+  },
+})

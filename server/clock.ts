@@ -1,0 +1,19 @@
+import type { CalendarDay } from '#shared/time/day'
+import { dayAt, toInstant, type Instant } from '#shared/time/instant'
+
+/** The only source of "now" and "today". Rules take days and instants as arguments; tests pass a clock they move by hand. */
+export interface Clock {
+  readonly timeZone: string
+  now(): Instant
+  /** Today's calendar date in the space's time zone. */
+  today(): CalendarDay
+}
+
+/** A clock over any source of milliseconds: the system's, or a test's own. */
+export const clockFrom = (milliseconds: () => number, timeZone: string): Clock => ({
+  timeZone,
+  now: () => toInstant(milliseconds()),
+  today: () => dayAt(toInstant(milliseconds()), timeZone),
+})
+
+export const systemClock = (timeZone: string) => clockFrom(Date.now, timeZone)

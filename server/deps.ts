@@ -1,0 +1,17 @@
+import type { Logger } from 'pino'
+import type { Clock } from './clock.ts'
+import type { Db } from './db/open.ts'
+
+/** What every service is given: nothing is reached for. */
+export interface Deps {
+  db: Db
+  clock: Clock
+  log: Logger
+  /** Base of every link in a letter; never taken from a request. */
+  appUrl: string
+  uploadsDir: string
+  mailFrom: string
+  demo: boolean
+  /** Whether the worker that sends letters has run lately. */
+  mailAlive: () => boolean
+}
