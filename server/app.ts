@@ -32,7 +32,13 @@ export function createApp(deps: Deps, options: AppOptions): Express {
   app.use(securityHeaders({ https: deps.appUrl.startsWith('https:'), dev: options.dev ?? false }))
   app.use(health(deps))
   app.use(compression({ threshold: 1024 }))
-  app.use('/api', originCheck(deps.appUrl), jsonBodies, sessionCookie(deps, options.sessionSecret), knowMember(deps))
+  app.use(
+    '/api',
+    originCheck(deps.appUrl),
+    jsonBodies,
+    sessionCookie(deps, options.sessionSecret),
+    knowMember(deps),
+  )
   app.use('/api/session', signInLimit)
   app.use('/api', docsRoutes(), ...apiRoutes(deps))
   app.use('/api', () => {

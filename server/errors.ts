@@ -26,7 +26,8 @@ export class AppError extends Error {
   }
 }
 
-export const notFound = (what = 'That') => new AppError('not-found', `${what} is not here, or not yours to see.`)
+export const notFound = (what = 'That') =>
+  new AppError('not-found', `${what} is not here, or not yours to see.`)
 
 export const invalidField = (path: string, message: string) =>
   new AppError('invalid', message, { errors: [{ path, message }] })

@@ -80,4 +80,4 @@ function checkSettings(sqlite: Sqlite, onDisk: boolean) {
 
 /** One user action, one transaction: takes the write lock at once, so that what was checked is what is written. */
 export const write = <T>(db: Db | Tx, action: (tx: Tx) => T): T =>
-  db.transaction((tx) => action(tx as Tx), { behavior: 'immediate' })
+  db.transaction((tx) => action(tx), { behavior: 'immediate' })

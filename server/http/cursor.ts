@@ -1,7 +1,8 @@
 import { AppError } from '../errors.ts'
 
 /** A cursor is the sort key of the last row shown; opaque to clients. */
-export const encodeCursor = (key: (string | number)[]) => Buffer.from(JSON.stringify(key)).toString('base64url')
+export const encodeCursor = (key: (string | number)[]) =>
+  Buffer.from(JSON.stringify(key)).toString('base64url')
 
 /**
  * @throws AppError `invalid` when the cursor was not made here
@@ -13,8 +14,12 @@ export function decodeCursor(cursor: string, length: number): (string | number)[
   } catch {
     key = undefined
   }
-  if (Array.isArray(key) && key.length === length && key.every((k) => typeof k === 'string' || typeof k === 'number'))
-    return key as (string | number)[]
+  if (
+    Array.isArray(key) &&
+    key.length === length &&
+    key.every((k) => typeof k === 'string' || typeof k === 'number')
+  )
+    return key
   const message = 'That cursor is not one of ours. Start again without it.'
   throw new AppError('invalid', message, { errors: [{ path: 'cursor', message }] })
 }

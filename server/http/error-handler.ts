@@ -13,7 +13,8 @@ export const errorHandler =
     if (res.headersSent) return next(error)
     const instance = newId()
     const refusal = asRefusal(error)
-    if (!refusal) deps.log.error({ err: error, instance, method: req.method, path: req.path }, 'unexpected error')
+    if (!refusal)
+      deps.log.error({ err: error, instance, method: req.method, path: req.path }, 'unexpected error')
     const code = refusal?.code ?? 'unavailable'
     const status = refusal ? refusal.status : 500
     const problem: Problem = {
@@ -24,7 +25,9 @@ export const errorHandler =
       code,
       detail: refusal?.message ?? 'Something went wrong on our side. Nothing was changed; try again.',
       instance,
-      ...(code === 'invalid' && { errors: refusal?.more.errors ?? [{ path: 'body', message: refusal?.message ?? '' }] }),
+      ...(code === 'invalid' && {
+        errors: refusal?.more.errors ?? [{ path: 'body', message: refusal?.message ?? '' }],
+      }),
     }
     if (refusal?.more.retryAfterSeconds) res.setHeader('Retry-After', refusal.more.retryAfterSeconds)
     res.status(status).setHeader('Cache-Control', 'no-store')
@@ -43,10 +46,16 @@ function asRefusal(error: unknown): AppError | undefined {
   if (error instanceof ZodError) return undefined
   const sqlite = sqliteCode(error)
   if (sqlite === 'SQLITE_BUSY' || sqlite === 'SQLITE_FULL')
-    return new AppError('unavailable', 'The database is busy. Nothing was changed; try again.', { retryAfterSeconds: 2 })
+    return new AppError('unavailable', 'The database is busy. Nothing was changed; try again.', {
+      retryAfterSeconds: 2,
+    })
   const status = (error as { status?: unknown } | null)?.status
-  if (typeof status === 'number' && status >= 400 && status < 500) return new AppError(codeFor(status), wordsFor(status))
-  if (error instanceof Error && /^(Multipart|Unexpected end of form|Malformed part|Boundary)/i.test(error.message))
+  if (typeof status === 'number' && status >= 400 && status < 500)
+    return new AppError(codeFor(status), wordsFor(status))
+  if (
+    error instanceof Error &&
+    /^(Multipart|Unexpected end of form|Malformed part|Boundary)/i.test(error.message)
+  )
     return new AppError('invalid', 'That form did not arrive whole. Send it again.')
   return undefined
 }

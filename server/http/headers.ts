@@ -25,7 +25,10 @@ export function securityHeaders({ https, dev }: { https: boolean; dev: boolean }
           directives: {
             defaultSrc: ["'none'"],
             scriptSrc: ["'self'", "'wasm-unsafe-eval'"],
-            styleSrc: ["'self'", (_req, res) => `'nonce-${(res as { locals?: { nonce?: string } }).locals?.nonce}'`],
+            styleSrc: [
+              "'self'",
+              (_req, res) => `'nonce-${(res as { locals?: { nonce?: string } }).locals?.nonce}'`,
+            ],
             imgSrc: ["'self'", 'data:', 'blob:'],
             fontSrc: ["'self'"],
             connectSrc: ["'self'"],

@@ -7,7 +7,6 @@ import { write, type Db, type Tx } from '../db/open.ts'
 import type { Deps } from '../deps.ts'
 import { AppError, invalidField } from '../errors.ts'
 import { digest } from '../ids.ts'
-import type { SignedIn } from './sessions.ts'
 
 const KEPT_HOURS = 48
 
@@ -29,8 +28,8 @@ export async function answerOnce({ deps, spec, req, res, run, send }: Once) {
   if (key !== undefined && (key.length === 0 || key.length > 255))
     throw invalidField('Idempotency-Key', 'Use 1 to 255 characters.')
   const record = key === undefined ? undefined : recordFor(spec, req, res, key)
-  if (record && replay(deps.db, record, res)) return
   if (spec.creates === 'async') {
+    if (record && replay(deps.db, record, res)) return
     if (record) begin(deps, record)
     try {
       const answer = await run()
@@ -46,7 +45,8 @@ export async function answerOnce({ deps, spec, req, res, run, send }: Once) {
     if (record && replay(tx, record, res)) return { replayed: true as const }
     try {
       const answer = run()
-      if (answer instanceof Promise) throw new Error(`${spec.path}: a sync creating handler returned a promise`)
+      if (answer instanceof Promise)
+        throw new Error(`${spec.path}: a sync creating handler returned a promise`)
       if (record) {
         begin(deps, record, tx)
         finish(tx, record, spec, answer)
@@ -57,7 +57,7 @@ export async function answerOnce({ deps, spec, req, res, run, send }: Once) {
       throw error
     }
   })
-  if ('refusal' in outcome) throw outcome.refusal
+  if (outcome.refusal) throw outcome.refusal
   if ('answer' in outcome) send(outcome.answer)
 }
 
@@ -67,7 +67,7 @@ interface KeyRecord {
 }
 
 function recordFor(spec: Endpoint, req: Request, res: Response, key: string): KeyRecord {
-  const user = res.locals.user as SignedIn | undefined
+  const user = res.locals.user
   const bytes = req.file ? digest(req.file.buffer.toString('base64')) : ''
   return {
     id: digest(JSON.stringify([user?.id ?? req.ip, spec.method, spec.path, key])),
@@ -80,9 +80,15 @@ function replay(db: Db | Tx, record: KeyRecord, res: Response): boolean {
   const first = db.select().from(idempotencyKeys).where(eq(idempotencyKeys.id, record.id)).get()
   if (!first) return false
   if (first.requestDigest !== record.requestDigest)
-    throw new AppError('idempotency-key-reused', 'This Idempotency-Key came with another request before. Make a new one.')
+    throw new AppError(
+      'idempotency-key-reused',
+      'This Idempotency-Key came with another request before. Make a new one.',
+    )
   if (first.status === null)
-    throw new AppError('wrong-state', 'The first request with this key is still running. Try again in a moment.')
+    throw new AppError(
+      'wrong-state',
+      'The first request with this key is still running. Try again in a moment.',
+    )
   res.setHeader('Idempotency-Replayed', 'true').setHeader('Cache-Control', 'no-store')
   res.status(first.status)
   if (first.body === null) res.end()

@@ -5,7 +5,8 @@ const parse = express.json({ limit: '100kb', type: 'application/json', strict: t
 
 /** JSON bodies only, unless the request carries a file; anything else is 415. */
 export const jsonBodies: RequestHandler = (req, res, next) => {
-  const hasBody = req.headers['transfer-encoding'] !== undefined || Number(req.headers['content-length'] ?? 0) > 0
+  const hasBody =
+    req.headers['transfer-encoding'] !== undefined || Number(req.headers['content-length'] ?? 0) > 0
   if (!hasBody || req.is('multipart/form-data')) return next()
   if (!req.is('application/json'))
     throw new AppError('wrong-media-type', 'Send JSON, with Content-Type: application/json.')

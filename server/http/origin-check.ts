@@ -16,7 +16,10 @@ export const originCheck =
     const trusted =
       site !== undefined
         ? site === 'same-origin' || site === 'none'
-        : origin === undefined || origin === new URL(appUrl).origin || origin === `${req.protocol}://${req.get('host')}`
-    if (!trusted) throw new AppError('forbidden', 'That request came from another site, so it was not carried out.')
+        : origin === undefined ||
+          origin === new URL(appUrl).origin ||
+          origin === `${req.protocol}://${req.get('host')}`
+    if (!trusted)
+      throw new AppError('forbidden', 'That request came from another site, so it was not carried out.')
     next()
   }

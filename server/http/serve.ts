@@ -3,7 +3,7 @@ import multer from 'multer'
 import type { z } from 'zod'
 import type { Access, Endpoint, Endpoints, Given, Received } from '#shared/http/endpoint'
 import type { FieldError } from '#shared/http/problem'
-import { roleCovers, type Role } from '#shared/people/vocabulary'
+import { roleCovers } from '#shared/people/vocabulary'
 import type { Deps } from '../deps.ts'
 import { AppError, invalidField } from '../errors.ts'
 import { answerOnce } from './idempotency.ts'
@@ -56,7 +56,8 @@ export function serve<C extends Endpoints>(deps: Deps, endpoints: C, handlers: H
       const input = validate(spec, req)
       const call = { user: res.locals.user, req, res, ...extras(spec, req) }
       const run = () => handler(input, call)
-      if (spec.creates) await answerOnce({ deps, spec, req, res, run, send: (answer) => send(spec, res, answer) })
+      if (spec.creates)
+        await answerOnce({ deps, spec, req, res, run, send: (answer) => send(spec, res, answer) })
       else send(spec, res, await run())
     })
     router[spec.method.toLowerCase() as 'get'](spec.path, ...steps)
@@ -76,7 +77,7 @@ function admit(spec: Endpoint, user: SignedIn | undefined) {
       )
     return
   }
-  if (!roleCovers(user.role, spec.access satisfies Exclude<Access, 'anyone'> as Role))
+  if (!roleCovers(user.role, spec.access satisfies Exclude<Access, 'anyone'>))
     throw new AppError('forbidden', `Only ${spec.access === 'admin' ? 'an admin' : 'a steward'} can do that.`)
 }
 
@@ -101,9 +102,13 @@ function uploaded(field: string, req: Request): Upload {
 }
 
 const schemaError = (errors: FieldError[]) =>
-  new AppError('invalid', errors.length === 1 ? (errors[0]?.message ?? '') : 'Some fields need another look.', {
-    errors,
-  })
+  new AppError(
+    'invalid',
+    errors.length === 1 ? (errors[0]?.message ?? '') : 'Some fields need another look.',
+    {
+      errors,
+    },
+  )
 
 function validate(spec: Endpoint, req: Request): Record<string, unknown> {
   const errors: FieldError[] = []
@@ -137,7 +142,8 @@ function fieldErrors(issue: z.core.$ZodIssue): FieldError[] {
 
 function refuseUnknown(value: unknown, errors: FieldError[]) {
   if (value === undefined || value === null) return
-  if (typeof value !== 'object' || Array.isArray(value)) errors.push({ path: 'body', message: 'Send an object or nothing.' })
+  if (typeof value !== 'object' || Array.isArray(value))
+    errors.push({ path: 'body', message: 'Send an object or nothing.' })
   else for (const path of Object.keys(value)) errors.push({ path, message: 'There is no such field.' })
 }
 

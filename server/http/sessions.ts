@@ -2,7 +2,7 @@ import { Store, type SessionData } from 'express-session'
 import session from 'express-session'
 import type { Request, RequestHandler } from 'express'
 import { and, eq, gt, lt } from 'drizzle-orm'
-import { addMinutes } from '#shared/time/instant'
+import { addMinutes, type Instant } from '#shared/time/instant'
 import type { MemberStatus, Role } from '#shared/people/vocabulary'
 import { members, sessions } from '../db/schema/people.ts'
 import type { Deps } from '../deps.ts'
@@ -64,14 +64,23 @@ class DatabaseStore extends Store {
     const row = { memberId: data.memberId ?? null, data: JSON.stringify(data) }
     this.deps.db
       .insert(sessions)
-      .values({ ...row, sidDigest: digest(sid), createdAt: now, seenAt: now, expiresAt: addMinutes(now, HOUR) })
+      .values({
+        ...row,
+        sidDigest: digest(sid),
+        createdAt: now,
+        seenAt: now,
+        expiresAt: addMinutes(now, HOUR),
+      })
       .onConflictDoUpdate({ target: sessions.sidDigest, set: row })
       .run()
     done?.()
   }
 
   override destroy = (sid: string, done?: (error?: unknown) => void) => {
-    this.deps.db.delete(sessions).where(eq(sessions.sidDigest, digest(sid))).run()
+    this.deps.db
+      .delete(sessions)
+      .where(eq(sessions.sidDigest, digest(sid)))
+      .run()
     done?.()
   }
 
@@ -88,7 +97,13 @@ export function sessionCookie(deps: Deps, secret: string): RequestHandler {
     store: new DatabaseStore(deps),
     resave: false,
     saveUninitialized: false,
-    cookie: { httpOnly: true, sameSite: 'lax', secure, path: '/', maxAge: SESSION_LIFE.member.absolute * 60_000 },
+    cookie: {
+      httpOnly: true,
+      sameSite: 'lax',
+      secure,
+      path: '/',
+      maxAge: SESSION_LIFE.member.absolute * 60_000,
+    },
   })
 }
 
@@ -126,7 +141,7 @@ export const knowMember =
   }
 
 /** Starts the life of a fresh session, or keeps a used one alive: whichever of idle and absolute comes first. */
-export function touch(deps: Deps, sidDigest: string, createdAt: string, role: Role) {
+export function touch(deps: Deps, sidDigest: string, createdAt: Instant, role: Role) {
   const now = deps.clock.now()
   const life = SESSION_LIFE[role]
   const idleEnd = addMinutes(now, life.idle)

@@ -18,7 +18,8 @@ export function staticClient(dir = CLIENT_DIR): Router {
   router.use(express.static(dir, { maxAge: '1h', index: false }))
   router.get('/{*path}', (_req, res) => {
     res.setHeader('Cache-Control', 'no-cache')
-    if (html === undefined) return res.status(503).type('text').send('The client is not built yet. Run: npm start')
+    if (html === undefined)
+      return res.status(503).type('text').send('The client is not built yet. Run: npm start')
     return res.type('html').send(html.replaceAll('__CSP_NONCE__', res.locals.nonce))
   })
   return router
@@ -39,6 +40,9 @@ const precompressed =
     if (!type || !/^\/[\w.-]+$/.test(req.path) || !req.acceptsEncodings('br')) return next()
     const file = join(dir, 'assets', `${req.path}.br`)
     if (!existsSync(file)) return next()
-    res.setHeader('Content-Type', type).setHeader('Content-Encoding', 'br').setHeader('Vary', 'Accept-Encoding')
+    res
+      .setHeader('Content-Type', type)
+      .setHeader('Content-Encoding', 'br')
+      .setHeader('Vary', 'Accept-Encoding')
     res.sendFile(file, { immutable: true, maxAge: '1y' })
   }

@@ -18,7 +18,10 @@ export async function checkCredentials(deps: Deps, email: string, password: stri
   const member = row?.status === 'left' ? undefined : row
   if (!(await passwordMatches(member?.passwordHash ?? null, password)) || !member) {
     countFailure(deps, key)
-    throw new AppError('signed-out', 'That e-mail address and password do not go together. Check both and try again.')
+    throw new AppError(
+      'signed-out',
+      'That e-mail address and password do not go together. Check both and try again.',
+    )
   }
   forgetFailures(deps, key)
   if (member.passwordHash && needsRehash(member.passwordHash)) {

@@ -34,6 +34,8 @@ export const intIn = (low: number, high: number) => z.int().min(low).max(high)
 /** Query strings are text: `?limit=20`, `?mine=true`. */
 export const queryNumber = (low: number, high: number) =>
   z.coerce.number<string | number>().min(low).max(high)
-export const queryFlag = z.enum(['true', 'false', '1', '0']).transform((text) => text === 'true' || text === '1')
+export const queryFlag = z
+  .enum(['true', 'false', '1', '0'])
+  .transform((text) => text === 'true' || text === '1')
 
 export const Version = z.int().min(1)

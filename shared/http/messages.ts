@@ -12,7 +12,8 @@ function plainMessage(issue: z.core.$ZodRawIssue): string | undefined {
       if (issue.expected === 'string') return 'Write some text.'
       return `This should be ${article(issue.expected)}.`
     case 'too_small':
-      if (issue.origin === 'string') return issue.minimum === 1 ? 'Fill this in.' : `Use at least ${issue.minimum} characters.`
+      if (issue.origin === 'string')
+        return issue.minimum === 1 ? 'Fill this in.' : `Use at least ${issue.minimum} characters.`
       if (issue.origin === 'array') return `Give at least ${issue.minimum}.`
       return `${issue.inclusive ? 'No less than' : 'More than'} ${issue.minimum}.`
     case 'too_big':
@@ -26,7 +27,9 @@ function plainMessage(issue: z.core.$ZodRawIssue): string | undefined {
     case 'not_multiple_of':
       return `Use steps of ${issue.divisor}.`
     case 'invalid_format':
-      return issue.format === 'date' ? 'Write a day like 2031-04-05.' : 'That is not written in the right form.'
+      return issue.format === 'date'
+        ? 'Write a day like 2031-04-05.'
+        : 'That is not written in the right form.'
     default:
       return undefined
   }

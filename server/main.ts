@@ -1,0 +1,71 @@
+import { createServer } from 'node:http'
+import type { RequestHandler } from 'express'
+import { pino } from 'pino'
+import { createApp } from './app.ts'
+import { systemClock } from './clock.ts'
+import { openDb } from './db/open.ts'
+import { seedDemo } from './db/seed/index.ts'
+import type { Deps } from './deps.ts'
+import { EnvError, readEnv, type Env } from './env.ts'
+import { greeting } from './greeting.ts'
+
+/** env → database → deps → app → jobs → listen → close. The only file that does anything by being imported. */
+async function main(env: Env) {
+  const log = pino({ level: env.logLevel })
+  const db = openDb(env.databaseFile)
+  const deps: Deps = {
+    db,
+    clock: systemClock(env.timeZone),
+    log,
+    appUrl: env.appUrl,
+    uploadsDir: env.uploadsDir,
+    mailFrom: env.mailFrom,
+    demo: env.demo,
+    mailAlive: () => true,
+  }
+  if (env.demo) await seedDemo(deps)
+  const server = createServer({ headersTimeout: 10_000, requestTimeout: 120_000, keepAliveTimeout: 75_000 })
+  const app = createApp(deps, {
+    sessionSecret: env.sessionSecret,
+    trustProxy: env.trustProxy,
+    dev: env.dev,
+    ...(env.dev && { client: await viteClient() }),
+  })
+  server.on('request', app)
+  await new Promise<void>((resolve, reject) => server.once('error', reject).listen(env.port, resolve))
+  process.stdout.write(greeting(env))
+
+  let closing = false
+  const close = (signal: string) => {
+    if (closing) process.exit(1)
+    closing = true
+    log.info({ signal }, 'closing')
+    server.close(() => {
+      db.$client.pragma('optimize')
+      db.$client.pragma('wal_checkpoint(TRUNCATE)')
+      db.$client.close()
+      process.exit(0)
+    })
+    server.closeIdleConnections()
+    setTimeout(() => server.closeAllConnections(), 10_000).unref()
+  }
+  process.on('SIGTERM', close)
+  process.on('SIGINT', close)
+}
+
+/** Vite in this process: one port, reload on edit. */
+async function viteClient(): Promise<RequestHandler> {
+  const { createServer: createVite } = await import('vite')
+  const vite = await createVite({ server: { middlewareMode: true }, appType: 'spa' })
+  return vite.middlewares
+}
+
+try {
+  await main(readEnv(process.env))
+} catch (error) {
+  if (error instanceof EnvError) process.stderr.write(`${error.message}\n`)
+  else if ((error as NodeJS.ErrnoException).code === 'EADDRINUSE')
+    process.stderr.write('PORT: something else is already listening there. Choose another, like PORT=3001.\n')
+  else process.stderr.write(`${error instanceof Error ? error.stack : String(error)}\n`)
+  process.exit(1)
+}
