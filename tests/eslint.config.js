@@ -74,7 +74,7 @@ export default defineConfig(
     'A component shows: data comes in as props, acts go out as events.',
   ),
   fence(
-    ['server/**'],
+    ['server/**/*.ts'],
     '^@/|^vue$|^(\\.\\./)+(src|tests)/|^#tests/|^(node:)?child_process$',
     'The server never imports the client or tests, and starts no other program.',
   ),
