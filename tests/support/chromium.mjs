@@ -21,7 +21,7 @@ export function findChromium({ install = false } = {}) {
   const mayInstall = process.getuid?.() === 0 && existsSync('/usr/bin/apt-get')
   if (!mayInstall) return undefined
   process.stdout.write('Installing Chromium for the journeys …\n')
-  const apt = (...args) =>
+  const apt = (/** @type {string[]} */ ...args) =>
     spawnSync('apt-get', args, {
       stdio: 'inherit',
       env: { ...process.env, DEBIAN_FRONTEND: 'noninteractive' },
