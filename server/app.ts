@@ -11,6 +11,7 @@ import { jsonBodies } from './http/json.ts'
 import { originCheck } from './http/origin-check.ts'
 import { knowMember, sessionCookie } from './http/sessions.ts'
 import { staticClient } from './http/static.ts'
+import { batchRoutes } from './routes/batches.ts'
 import { docsRoutes } from './routes/docs.ts'
 import { sessionRoutes } from './routes/session.ts'
 
@@ -50,7 +51,7 @@ export function createApp(deps: Deps, options: AppOptions): Express {
 }
 
 /** Every domain's routes, in no particular order: paths do not overlap. */
-const apiRoutes = (deps: Deps): Router[] => [sessionRoutes(deps)]
+const apiRoutes = (deps: Deps): Router[] => [sessionRoutes(deps), batchRoutes(deps)]
 
 /** Per address; per account it is counted in the database (http/sign-in-throttle). */
 const signInLimit = rateLimit({

@@ -1,1 +1,2 @@
 export * from './people.ts'
+export * from './batches.ts'
