@@ -1,0 +1,101 @@
+import type { RouteRecordInfo, RouteRecordRaw } from 'vue-router'
+import type { Access } from '#shared/http/endpoint'
+
+/** Every page by name. A link can only name one of these: `:to="{ name: 'kind', params: { kindId } }"`. */
+export const PATHS = {
+  'sign-in': '/sign-in',
+  join: '/join',
+  invitation: '/invitations/:token',
+  forgotten: '/forgotten',
+  'new-password': '/forgotten/:token',
+  today: '/',
+  desk: '/desk',
+  scan: '/scan',
+  kit: '/kit',
+  kind: '/kit/:kindId',
+  item: '/items/:tag',
+  loan: '/loans/:loanId',
+  loans: '/loans',
+  calendar: '/calendar',
+  batches: '/batches',
+  'batch-new': '/batches/new',
+  batch: '/batches/:batchId',
+  yeast: '/yeast',
+  'packet-new': '/yeast/new',
+  packet: '/yeast/:packetId',
+  larder: '/larder',
+  bench: '/bench',
+  stocktake: '/stocktake',
+  reports: '/reports',
+  members: '/members',
+  space: '/space',
+  me: '/me',
+  more: '/more',
+  gallery: '/gallery',
+  'not-found': '/:anything(.*)*',
+} as const
+
+export type PageName = keyof typeof PATHS
+
+declare module 'vue-router' {
+  interface RouteMeta {
+    /** First part of the document title, and what a page is called before it has loaded its own name. */
+    title: string
+    /** Who may come in; `member` unless said. The server decides again for each request. */
+    access?: Access
+    /** Drawn without header and bottom bar. */
+    bare?: true
+    /** Which place of the navigation is lit, where it is not the page itself. */
+    place?: PageName
+  }
+  interface TypesConfig {
+    RouteNamedMap: {
+      [N in PageName]: RouteRecordInfo<
+        N,
+        (typeof PATHS)[N],
+        Params<(typeof PATHS)[N]>,
+        Params<(typeof PATHS)[N]>
+      >
+    }
+  }
+}
+
+type Params<P extends string> = P extends `${string}:anything${string}`
+  ? { anything?: string[] }
+  : { [K in ParamNames<P>]: string }
+type ParamNames<P extends string> = P extends `${string}:${infer N}/${infer R}`
+  ? N | ParamNames<`/${R}`>
+  : P extends `${string}:${infer N}`
+    ? N
+    : never
+
+type Meta = RouteRecordRaw['meta'] & { title: string }
+type View = () => Promise<object>
+
+const page = (name: PageName, component: View, meta: Meta): RouteRecordRaw => ({
+  name,
+  path: PATHS[name],
+  component,
+  meta,
+  props: true,
+})
+
+/** One line a page. Views are loaded when they are first opened. */
+export const routes: RouteRecordRaw[] = [
+  page('sign-in', () => import('@/views/session/SignInView.vue'), {
+    title: 'Sign in',
+    access: 'anyone',
+    bare: true,
+  }),
+  page('more', () => import('@/views/session/MoreView.vue'), { title: 'More' }),
+  page('not-found', () => import('@/views/session/NotFoundView.vue'), {
+    title: 'Not here',
+    access: 'anyone',
+  }),
+]
+
+if (import.meta.env.DEV) {
+  routes.push(
+    page('gallery', () => import('@/views/gallery/GalleryView.vue'), { title: 'Gallery', access: 'anyone' }),
+  )
+}
