@@ -1,2 +1,3 @@
 export * from './people.ts'
 export * from './batches.ts'
+export * from './kit.ts'
