@@ -22,6 +22,7 @@ const router = makeRouter()
 
 guard(router, { ready: session.load, role: () => session.member?.role })
 whenSignedOut(() => {
+  if (!session.member) return
   session.forget()
   const { fullPath, name } = router.currentRoute.value
   if (name !== 'sign-in') void router.push({ name: 'sign-in', query: { next: fullPath, ended: '1' } })
