@@ -1,9 +1,9 @@
 import compression from 'compression'
 import express, { type Express, type Router } from 'express'
-import { rateLimit } from 'express-rate-limit'
 import { speakPlainly } from '#shared/http/messages'
 import type { Deps } from './deps.ts'
-import { AppError, notFound } from './errors.ts'
+import { notFound } from './errors.ts'
+import { linkLimit, signInLimit } from './http/address-limits.ts'
 import { errorHandler } from './http/error-handler.ts'
 import { securityHeaders } from './http/headers.ts'
 import { health } from './http/health.ts'
@@ -13,6 +13,7 @@ import { knowMember, sessionCookie } from './http/sessions.ts'
 import { staticClient } from './http/static.ts'
 import { batchRoutes } from './routes/batches.ts'
 import { docsRoutes } from './routes/docs.ts'
+import { peopleRoutes } from './routes/people.ts'
 import { sessionRoutes } from './routes/session.ts'
 
 export interface AppOptions {
@@ -40,7 +41,8 @@ export function createApp(deps: Deps, options: AppOptions): Express {
     sessionCookie(deps, options.sessionSecret),
     knowMember(deps),
   )
-  app.use('/api/session', signInLimit)
+  app.use('/api/session', signInLimit())
+  app.post(LINKS, linkLimit())
   app.use('/api', docsRoutes(), ...apiRoutes(deps))
   app.use('/api', () => {
     throw notFound('That address')
@@ -50,20 +52,13 @@ export function createApp(deps: Deps, options: AppOptions): Express {
   return app
 }
 
-/** Every domain's routes, in no particular order: paths do not overlap. */
-const apiRoutes = (deps: Deps): Router[] => [sessionRoutes(deps), batchRoutes(deps)]
+/** Where links are asked for and used. */
+const LINKS = [
+  '/api/join-requests',
+  '/api/invitations/:token/accept',
+  '/api/password-resets{/:token}',
+  '/api/email-changes/:token',
+]
 
-/** Per address; per account it is counted in the database (http/sign-in-throttle). */
-const signInLimit = rateLimit({
-  windowMs: 15 * 60_000,
-  limit: 30,
-  skip: (req) => req.method !== 'POST',
-  skipSuccessfulRequests: true,
-  standardHeaders: false,
-  legacyHeaders: false,
-  handler: () => {
-    throw new AppError('too-many', 'Too many tries from here. Wait a quarter of an hour, then try again.', {
-      retryAfterSeconds: 900,
-    })
-  },
-})
+/** Every domain's routes, in no particular order: paths do not overlap. */
+const apiRoutes = (deps: Deps): Router[] => [sessionRoutes(deps), peopleRoutes(deps), batchRoutes(deps)]

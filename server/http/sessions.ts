@@ -6,11 +6,16 @@ import { addMinutes, type Instant } from '#shared/time/instant'
 import type { MemberStatus, Role } from '#shared/people/vocabulary'
 import { members, sessions } from '../db/schema/people.ts'
 import type { Deps } from '../deps.ts'
+import { invalidField } from '../errors.ts'
 import { digest } from '../ids.ts'
+import { deviceInWords } from '../services/own-sessions.ts'
+import { checkCredentials } from '../services/session.ts'
 
 declare module 'express-session' {
   interface SessionData {
     memberId: string
+    /** When a password was last given in this session. */
+    provenAt: string
   }
 }
 
@@ -163,13 +168,35 @@ export async function startSession(deps: Deps, req: Request, member: { id: strin
     req.session.regenerate((error) => (error ? reject(error as Error) : resolve()))
   })
   req.session.memberId = member.id
+  req.session.provenAt = deps.clock.now()
   await new Promise<void>((resolve, reject) => {
     req.session.save((error) => (error ? reject(error as Error) : resolve()))
   })
-  touch(deps, digest(req.sessionID), deps.clock.now(), member.role)
+  const sid = digest(req.sessionID)
+  const device = deviceInWords(req.get('user-agent'))
+  deps.db.update(sessions).set({ device }).where(eq(sessions.sidDigest, sid)).run()
+  touch(deps, sid, deps.clock.now(), member.role)
 }
 
 export const endSession = (req: Request) =>
   new Promise<void>((resolve, reject) => {
     req.session.destroy((error) => (error ? reject(error as Error) : resolve()))
   })
+
+export const sidDigestOf = (req: Request) => digest(req.sessionID)
+
+/** Minutes for which a password just given is proof enough for a risky act. */
+const FRESH = 10
+
+/**
+ * Wants proof that it is still the member at the keys: a password given lately, or given now.
+ * @throws AppError `invalid` at `password`
+ */
+export async function insistOnFresh(deps: Deps, req: Request, user: SignedIn, password: string | undefined) {
+  const now = deps.clock.now()
+  const provenAt = req.session.provenAt as Instant | undefined
+  if (password === undefined && provenAt && now <= addMinutes(provenAt, FRESH)) return
+  if (password === undefined) throw invalidField('password', 'Give your password once more.')
+  await checkCredentials(deps, user.email, password)
+  req.session.provenAt = now
+}

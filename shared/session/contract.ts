@@ -1,10 +1,8 @@
 import { z } from 'zod'
 import { endpoint } from '../http/endpoint.ts'
 import { Id } from '../http/fields.ts'
+import { PASSWORD_MAX } from '../people/passwords.ts'
 import { MEMBER_STATUSES, ROLES } from '../people/vocabulary.ts'
-
-/** Longest password taken; more is refused, never cut. Code points, after NFC. */
-export const PASSWORD_MAX = 256
 
 export const SignedInMember = z.object({
   id: Id,

@@ -1,9 +1,11 @@
 import { batchEndpoints } from '#shared/batches/contract'
+import { peopleEndpoints } from '#shared/people/contract'
 import { sessionEndpoints } from '#shared/session/contract'
 import { createClient } from './client.ts'
 
 /** Every call the client can make, by domain. */
 export const api = {
   session: createClient(sessionEndpoints),
+  people: createClient(peopleEndpoints),
   batches: createClient(batchEndpoints),
 }

@@ -6,6 +6,7 @@ CREATE TABLE members (
   role TEXT NOT NULL CHECK (role IN ('member', 'steward', 'admin')),
   status TEXT NOT NULL CHECK (status IN ('active', 'suspended', 'left')),
   password_hash TEXT,
+  erase_on TEXT,
   created_at TEXT NOT NULL,
   updated_at TEXT NOT NULL,
   version INTEGER NOT NULL DEFAULT 1 CHECK (version >= 1)
@@ -17,6 +18,7 @@ CREATE TABLE sessions (
   sid_digest TEXT PRIMARY KEY NOT NULL,
   member_id TEXT REFERENCES members (id) ON DELETE CASCADE,
   data TEXT NOT NULL,
+  device TEXT NOT NULL DEFAULT '' CHECK (length(device) <= 80),
   created_at TEXT NOT NULL,
   seen_at TEXT NOT NULL,
   expires_at TEXT NOT NULL

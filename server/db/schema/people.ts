@@ -1,6 +1,6 @@
 import { index, sqliteTable, text, uniqueIndex, integer } from 'drizzle-orm/sqlite-core'
 import { MEMBER_STATUSES, ROLES } from '#shared/people/vocabulary'
-import { createdAt, id, instant, updatedAt, version } from './columns.ts'
+import { createdAt, day, id, instant, updatedAt, version } from './columns.ts'
 
 export const members = sqliteTable(
   'members',
@@ -13,6 +13,8 @@ export const members = sqliteTable(
     status: text('status', { enum: MEMBER_STATUSES }).notNull(),
     /** PHC string; null until an invitation is accepted. */
     passwordHash: text('password_hash'),
+    /** The day the account is erased, once its owner asked to leave; until then that can be undone. */
+    eraseOn: day('erase_on'),
     createdAt: createdAt(),
     updatedAt: updatedAt(),
     version: version(),
@@ -27,6 +29,8 @@ export const sessions = sqliteTable(
     sidDigest: text('sid_digest').primaryKey(),
     memberId: text('member_id').references(() => members.id, { onDelete: 'cascade' }),
     data: text('data').notNull(),
+    /** Browser and system in a few words, for the owner's own list. */
+    device: text('device').notNull().default(''),
     createdAt: createdAt(),
     seenAt: instant('seen_at').notNull(),
     expiresAt: instant('expires_at').notNull(),
