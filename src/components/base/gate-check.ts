@@ -1,0 +1,5 @@
+export interface GateCheck {
+  passed: boolean
+  fact: string
+  why?: string
+}
