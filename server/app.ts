@@ -15,6 +15,7 @@ import { batchRoutes } from './routes/batches.ts'
 import { docsRoutes } from './routes/docs.ts'
 import { peopleRoutes } from './routes/people.ts'
 import { sessionRoutes } from './routes/session.ts'
+import { yeastRoutes } from './routes/yeast.ts'
 
 export interface AppOptions {
   sessionSecret: string
@@ -61,4 +62,4 @@ const LINKS = [
 ]
 
 /** Every domain's routes, in no particular order: paths do not overlap. */
-const apiRoutes = (deps: Deps): Router[] => [sessionRoutes(deps), peopleRoutes(deps), batchRoutes(deps)]
+const apiRoutes = (deps: Deps): Router[] => [sessionRoutes(deps), peopleRoutes(deps), batchRoutes(deps), yeastRoutes(deps)]

@@ -2,10 +2,12 @@ import { batchEndpoints } from './batches/contract.ts'
 import type { Endpoints } from './http/endpoint.ts'
 import { peopleEndpoints } from './people/contract.ts'
 import { sessionEndpoints } from './session/contract.ts'
+import { yeastEndpoints } from './yeast/contract.ts'
 
 /** Every endpoint there is, by domain: the API page and the access tests read this list. */
 export const contracts: Record<string, Endpoints> = {
   session: sessionEndpoints,
   people: peopleEndpoints,
   batches: batchEndpoints,
+  yeast: yeastEndpoints,
 }

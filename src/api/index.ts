@@ -1,6 +1,7 @@
 import { batchEndpoints } from '#shared/batches/contract'
 import { peopleEndpoints } from '#shared/people/contract'
 import { sessionEndpoints } from '#shared/session/contract'
+import { yeastEndpoints } from '#shared/yeast/contract'
 import { createClient } from './client.ts'
 
 /** Every call the client can make, by domain. */
@@ -8,4 +9,5 @@ export const api = {
   session: createClient(sessionEndpoints),
   people: createClient(peopleEndpoints),
   batches: createClient(batchEndpoints),
+  yeast: createClient(yeastEndpoints),
 }
