@@ -93,10 +93,13 @@ export const BEER_CELLS_PER_ML_PLATO = {
 /** Above this gravity the dose of wine yeast rises, to double at 1.130 (AWRI: up to double for high sugar). */
 export const HIGH_SUGAR_OG = 1.1
 export const DOUBLE_DOSE_OG = 1.13
-/** Below these, the words change. A third alive is still a pitch, with more of it; a tenth is a question to be asked first. */
-export const VIABILITY_GOOD = 0.6
-export const VIABILITY_MORE = 0.3
-export const VIABILITY_PROVE = 0.05
+/**
+ * Below these, the words change. Four fifths alive is an ordinary pitch; half still starts, with more of it; a fifth is a
+ * question to be asked first, and less than that is not worth a must. Chosen so that a word changes before a dose doubles.
+ */
+export const VIABILITY_GOOD = 0.8
+export const VIABILITY_MORE = 0.5
+export const VIABILITY_PROVE = 0.2
 export const PITCH_VERDICTS = ['good', 'pitch-more', 'prove-first', 'do-not-rely'] as const
 
 /** Rehydration by common practice: ten times its weight of tap water, 35–40 °C, 15–30 minutes, then within 10 °C of the must. */

@@ -119,7 +119,7 @@ export function pitchAdvice({
   const available = availableGrams ?? undefined
   if (available !== undefined) within('availableGrams', available, 0, 100_000)
 
-  // A twentieth alive is the least that is worth dosing for: under it, no weight of packets helps.
+  // A fifth alive is the least that is worth dosing for: under it, no weight of packets helps.
   const share = Math.max(VIABILITY_PROVE, alive.estimate)
   const want = wanted(drink, og)
   const perGram = CELLS_PER_GRAM[kind] * share

@@ -51,8 +51,7 @@ export const PacketRequest = z
     note: facts.note.default(''),
   })
   .superRefine((packet, context) => {
-    const add = (path: string, message: string) =>
-      context.addIssue({ code: 'custom', path: [path], message })
+    const add = (path: string, message: string) => context.addIssue({ code: 'custom', path: [path], message })
     const { initialGrams, initialMl, remainingGrams, remainingMl } = packet
     if (initialGrams === undefined && initialMl === undefined)
       add(packet.form === 'dry' ? 'initialGrams' : 'initialMl', 'Say how much was in it.')
@@ -91,7 +90,12 @@ export const PacketCopy = z.strictObject({
 export type PacketCopy = z.output<typeof PacketCopy>
 
 export const Viability = z.object({ estimate: z.number(), low: z.number(), high: z.number() })
-export const Lot = z.object({ id: Id, state: z.enum(LOT_STATES), note: z.string().nullable(), version: z.int() })
+export const Lot = z.object({
+  id: Id,
+  state: z.enum(LOT_STATES),
+  note: z.string().nullable(),
+  version: z.int(),
+})
 
 export type Lot = z.output<typeof Lot>
 
@@ -114,7 +118,8 @@ export const Packet = z.object({
   shared: z.boolean(),
   place: z.string().nullable(),
   note: z.string(),
-  photoId: Id.nullable(),
+  /** Changes with the photo; null: there is none. */
+  photoName: z.string().nullable(),
   lot: Lot,
   ownerName: z.string(),
   mine: z.boolean(),
@@ -374,7 +379,12 @@ export const yeastEndpoints = {
     path: '/pitches',
     access: 'member',
     summary: 'Your pitches, newest first; or those whose outcome is wanted.',
-    query: z.object({ ...pageQuery, batchId: Id.optional(), packetId: Id.optional(), waiting: queryFlag.optional() }),
+    query: z.object({
+      ...pageQuery,
+      batchId: Id.optional(),
+      packetId: Id.optional(),
+      waiting: queryFlag.optional(),
+    }),
     reply: pageOf(Pitch),
   }),
   getPitch: endpoint({

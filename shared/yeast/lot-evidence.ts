@@ -81,7 +81,10 @@ export function lotStanding(reports: readonly LotReport[], on: CalendarDay): Lot
   const counted = reports.filter((report) => !report.setAside)
   if (counted.length === 0) return { factor: 1, low: 1, high: 1, width: 1, dead: ORDINARY.dead }
   const seen = counted.map(asSeen)
-  const latest = counted.reduce((day, { pitchedOn }) => (pitchedOn > day ? pitchedOn : day), '' as CalendarDay)
+  const latest = counted.reduce(
+    (day, { pitchedOn }) => (pitchedOn > day ? pitchedOn : day),
+    '' as CalendarDay,
+  )
   const monthsSince = between(0, daysBetween(latest, on) / 30.44, 240)
   const belief = lotBelief({}, seen)
   const faded = lotBelief({ monthsSince }, seen)

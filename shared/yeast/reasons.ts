@@ -131,9 +131,16 @@ function ageReason({ form }: PacketFacts, madeOn: CalendarDay, on: CalendarDay):
 function dateReasons(packet: PacketFacts, on: CalendarDay): Reason[] {
   const { bestBefore, madeOn } = packet
   if (!bestBefore) return []
-  const assumed = madeOn ? 'The date is not a cliff.' : 'Its age is judged by this date, as nobody wrote when it was made.'
+  const assumed = madeOn
+    ? 'The date is not a cliff.'
+    : 'Its age is judged by this date, as nobody wrote when it was made.'
   const days = daysBetween(on, bestBefore)
-  const when = dateState(packet, on) === 'past' ? `${spanWords(-days)} ago` : days === 0 ? 'today' : `in ${spanWords(days)}`
+  const when =
+    dateState(packet, on) === 'past'
+      ? `${spanWords(-days)} ago`
+      : days === 0
+        ? 'today'
+        : `in ${spanWords(days)}`
   return [
     {
       text: `Best before ${days < 0 && days > -2 ? 'yesterday' : when}.`,
@@ -182,9 +189,17 @@ function lotStateReasons({ state, note }: Known['lot']): Reason[] {
     case 'sound':
       return []
     case 'flagged':
-      return [{ text: 'This lot is flagged.', why: 'It failed twice. A steward is to look at it.', effect: 'lowers' }]
+      return [
+        {
+          text: 'This lot is flagged.',
+          why: 'It failed twice. A steward is to look at it.',
+          effect: 'lowers',
+        },
+      ]
     case 'withdrawn':
-      return [{ text: 'A steward withdrew this lot.', why: note ?? 'It is not to be pitched.', effect: 'lowers' }]
+      return [
+        { text: 'A steward withdrew this lot.', why: note ?? 'It is not to be pitched.', effect: 'lowers' },
+      ]
   }
 }
 

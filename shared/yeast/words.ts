@@ -1,6 +1,20 @@
 import { type CalendarDay, daysBetween } from '../time/day.ts'
 
-const SMALL = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eight', 'nine', 'ten', 'eleven', 'twelve']
+const SMALL = [
+  'no',
+  'one',
+  'two',
+  'three',
+  'four',
+  'five',
+  'six',
+  'seven',
+  'eight',
+  'nine',
+  'ten',
+  'eleven',
+  'twelve',
+]
 
 /** `7` is `seven`; from thirteen on, figures. */
 export const numberWord = (count: number) => SMALL[count] ?? String(count)

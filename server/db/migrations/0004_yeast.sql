@@ -36,7 +36,7 @@ CREATE TABLE packets (
   shared INTEGER NOT NULL CHECK (shared IN (0, 1)),
   place TEXT CHECK (length(place) BETWEEN 1 AND 60),
   note TEXT NOT NULL DEFAULT '' CHECK (length(note) <= 1000),
-  photo_id TEXT,
+  photo_name TEXT CHECK (length(photo_name) BETWEEN 16 AND 64 AND photo_name NOT GLOB '*[^A-Za-z0-9_-]*'),
   copied_from_id TEXT REFERENCES packets (id) ON DELETE SET NULL,
   discarded_at TEXT,
   created_at TEXT NOT NULL,

@@ -67,7 +67,8 @@ export const packets = sqliteTable(
     /** Where in the fridge; null: nobody said. */
     place: text('place'),
     note: text('note').notNull().default(''),
-    photoId: text('photo_id'),
+    /** Of its files; null: no photo. */
+    photoName: text('photo_name'),
     copiedFromId: text('copied_from_id').references((): AnySQLiteColumn => packets.id, {
       onDelete: 'set null',
     }),

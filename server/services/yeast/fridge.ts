@@ -86,7 +86,11 @@ export interface LotHistory extends LotFacts {
 }
 
 /** What pitches of some lots did, by lot: one statement. The last outcome of each pitch counts. */
-export function lotHistories(db: Db | Tx, lots: readonly LotRow[], timeZone: string): Map<string, LotHistory> {
+export function lotHistories(
+  db: Db | Tx,
+  lots: readonly LotRow[],
+  timeZone: string,
+): Map<string, LotHistory> {
   const wanted = JSON.stringify(lots.map(({ id }) => id))
   const rows = db
     .select({

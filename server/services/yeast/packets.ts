@@ -95,7 +95,9 @@ function lotFor(
   if (known) return known.id
   const id = newId()
   const now = deps.clock.now()
-  tx.insert(yeastLots).values({ id, lotKey: key, strain, form, lotCode, createdAt: now, updatedAt: now }).run()
+  tx.insert(yeastLots)
+    .values({ id, lotKey: key, strain, form, lotCode, createdAt: now, updatedAt: now })
+    .run()
   return id
 }
 
@@ -172,8 +174,7 @@ type Place = Loaded['packet']['storage'][number]
 
 /** A move counts from its day; a second one on the same day corrects the first, and staying put is no move. */
 function recordPlace(deps: Deps, tx: Tx, user: SignedIn, packet: Loaded['packet'], place: Place) {
-  if (place.from > deps.clock.today())
-    throw invalidField('movedOn', 'It cannot have been moved after today.')
+  if (place.from > deps.clock.today()) throw invalidField('movedOn', 'It cannot have been moved after today.')
   const first = packet.storage[0]
   if (packet.madeOn && place.from < packet.madeOn)
     throw invalidField('movedOn', 'It was moved before it was made.')

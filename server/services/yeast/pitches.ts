@@ -53,7 +53,12 @@ export function pitchInto(deps: Deps, user: SignedIn, batchId: string, request: 
         createdAt: now,
       })
       .run()
-    moveAmount(deps, tx, user, { packetId: found.packet.id, reason: 'pitched', changeMilli: -milli, pitchId: id })
+    moveAmount(deps, tx, user, {
+      packetId: found.packet.id,
+      reason: 'pitched',
+      changeMilli: -milli,
+      pitchId: id,
+    })
     afterPitch(deps, tx, found, batch, { at, milli })
     return readPitchRow(tx, user, id)
   })
@@ -67,7 +72,7 @@ function amountFor({ packet, lot }: Loaded, { grams, ml }: PitchRequest): number
   const amount = packet.unit === 'g' ? grams : ml
   if (amount === undefined)
     throw invalidField(
-      packet.unit === 'g' ? 'ml' : 'grams',
+      packet.unit === 'g' ? 'grams' : 'ml',
       `This packet is counted in ${packet.unit === 'g' ? 'grams' : 'millilitres'}.`,
     )
   const milli = toMilli(amount)
@@ -174,7 +179,9 @@ function pitchReply({ pitch, strain, batchName, outcome, hoursToActivity, report
     ...{ strain, batchName, outcome, hoursToActivity, reportedAt, mustTemperatureC },
     grams: unit === 'g' ? amount : null,
     ml: unit === 'ml' ? amount : null,
-    cautions: hot ? [`Must over ${TOO_HOT_FOR_YEAST_C} °C can kill yeast before it wakes. Watch this one.`] : [],
+    cautions: hot
+      ? [`Must over ${TOO_HOT_FOR_YEAST_C} °C can kill yeast before it wakes. Watch this one.`]
+      : [],
   }
 }
 
@@ -195,8 +202,8 @@ export function listPitches(deps: Deps, user: SignedIn, query: PitchQuery): Page
   const after = query.cursor ? (decodeCursor(query.cursor, 2) as [string, string]) : undefined
   const where = and(
     eq(pitches.memberId, user.id),
-    query.batchId && eq(pitches.batchId, query.batchId),
-    query.packetId && eq(pitches.packetId, query.packetId),
+    query.batchId ? eq(pitches.batchId, query.batchId) : undefined,
+    query.packetId ? eq(pitches.packetId, query.packetId) : undefined,
     query.waiting ? and(lte(pitches.outcomeWantedAt, deps.clock.now()), isNull(pitchOutcomes.id)) : undefined,
     after && lt(sql`(${pitches.at}, ${pitches.id})`, sql`(${after[0]}, ${after[1]})`),
   )
@@ -210,7 +217,8 @@ export function reportOutcome(deps: Deps, user: SignedIn, pitchId: string, repor
   const now = deps.clock.now()
   return write(deps.db, (tx) => {
     const row = ownPitch(tx, user, pitchId)
-    if (row.pitch.at > now) throw new AppError('wrong-state', 'It is not in yet. Report once it has had its time.')
+    if (row.pitch.at > now)
+      throw new AppError('wrong-state', 'It is not in yet. Report once it has had its time.')
     const hoursToActivity = report.hoursToActivity ?? null
     if (row.outcome === report.outcome && row.hoursToActivity === hoursToActivity) return pitchReply(row)
     tx.insert(pitchOutcomes)

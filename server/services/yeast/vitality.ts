@@ -7,7 +7,7 @@ import { lotStanding, type LotStanding } from '#shared/yeast/lot-evidence'
 import { packetVitality, type Question } from '#shared/yeast/vitality'
 import type { DateState, PacketState } from '#shared/yeast/vocabulary'
 import type { DrinkUse, YeastForm } from '#shared/brewing/vocabulary'
-import type { CalendarDay } from '#shared/time/day'
+import { addDays, type CalendarDay } from '#shared/time/day'
 import type { Page } from '#shared/http/paging'
 import { packets } from '../../db/schema/yeast.ts'
 import type { Db, Tx } from '../../db/open.ts'
@@ -68,12 +68,16 @@ export function listPackets(deps: Deps, user: SignedIn, query: ListQuery): Page<
       query.use && eq(packets.use, query.use),
       query.form && eq(packets.form, query.form),
       // Written on the packet's own column, so that it holds without the join too.
-      query.flagged &&
-        sql`${packets.lotId} in (select id from yeast_lots where state in ('flagged', 'withdrawn'))`,
+      query.flagged
+        ? sql`${packets.lotId} in (select id from yeast_lots where state in ('flagged', 'withdrawn'))`
+        : undefined,
     ),
   ).filter(({ packet }) => !query.date || dateState(packet, today) === query.date)
   const judged = judge(deps.db, loaded, { on: today, timeZone: deps.clock.timeZone }).sort(byLikelihood)
-  const page = pageFrom(afterCursor(judged, query.cursor), query.limit, (row) => [likelihoodRank(row), row.id])
+  const page = pageFrom(afterCursor(judged, query.cursor), query.limit, (row) => [
+    likelihoodRank(row),
+    row.id,
+  ])
   return { ...page, items: page.items.map((row) => fridgeReply(row, user, today)) }
 }
 
@@ -93,6 +97,8 @@ const fridgeReply = (row: Judged, user: SignedIn, today: CalendarDay): FridgePac
   reason: row.reason,
 })
 
+const FURTHEST_DAYS = 3652
+
 interface VitalityQuery {
   on?: CalendarDay | undefined
   volumeLitres?: number | undefined
@@ -105,6 +111,8 @@ export function packetAnswer(deps: Deps, user: SignedIn, packetId: string, query
   const { packet } = found
   const on = query.on ?? deps.clock.today()
   if (packet.madeOn && on < packet.madeOn) throw invalidField('on', 'That is before the packet was made.')
+  if (on > addDays(deps.clock.today(), FURTHEST_DAYS))
+    throw invalidField('on', 'Ask about the next ten years.')
   // One made after the asked day is no alternative then.
   const others = loadPackets(deps.db, and(visibleTo(user.id), AT_HAND)).filter(
     (other) => other.packet.id !== packetId && !(other.packet.madeOn && other.packet.madeOn > on),
@@ -170,7 +178,9 @@ export function listStrains(
       newest: sql<string>`max(${packets.createdAt})`,
     })
     .from(packets)
-    .where(and(visibleTo(user.id), after && gt(sql`(${key}, ${packets.form})`, sql`(${after[0]}, ${after[1]})`)))
+    .where(
+      and(visibleTo(user.id), after && gt(sql`(${key}, ${packets.form})`, sql`(${after[0]}, ${after[1]})`)),
+    )
     .groupBy(key, packets.form)
     .orderBy(key, packets.form)
     .limit(query.limit + 1)
