@@ -62,4 +62,9 @@ const LINKS = [
 ]
 
 /** Every domain's routes, in no particular order: paths do not overlap. */
-const apiRoutes = (deps: Deps): Router[] => [sessionRoutes(deps), peopleRoutes(deps), batchRoutes(deps), yeastRoutes(deps)]
+const apiRoutes = (deps: Deps): Router[] => [
+  sessionRoutes(deps),
+  peopleRoutes(deps),
+  batchRoutes(deps),
+  yeastRoutes(deps),
+]
