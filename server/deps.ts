@@ -12,6 +12,8 @@ export interface Deps {
   uploadsDir: string
   mailFrom: string
   demo: boolean
+  /** No relay is named: letters are caught and readable at /dev/mail. */
+  mailCaught: boolean
   /** Whether the worker that sends letters has run lately. */
   mailAlive: () => boolean
 }

@@ -8,10 +8,15 @@ import { seedDemo } from './db/seed/index.ts'
 import type { Deps } from './deps.ts'
 import { EnvError, readEnv, type Env } from './env.ts'
 import { greeting } from './greeting.ts'
+import { startJobs, type Jobs } from './jobs/scheduler.ts'
+import { startCatcher } from './mail/catcher.ts'
+import { smtpMailer } from './mail/smtp.ts'
 
 /** env → database → deps → app → jobs → listen → close. The only file that does anything by being imported. */
 async function main(env: Env) {
   const log = pino({ level: env.logLevel })
+  let jobs: Jobs | undefined
+  let closing = false
   const db = openDb(env.databaseFile)
   const deps: Deps = {
     db,
@@ -21,7 +26,8 @@ async function main(env: Env) {
     uploadsDir: env.uploadsDir,
     mailFrom: env.mailFrom,
     demo: env.demo,
-    mailAlive: () => true,
+    mailCaught: env.smtpUrl === undefined,
+    mailAlive: () => !closing && (jobs?.alive() ?? false),
   }
   if (env.demo) await seedDemo(deps)
   const server = createServer({ headersTimeout: 10_000, requestTimeout: 120_000, keepAliveTimeout: 75_000 })
@@ -33,21 +39,27 @@ async function main(env: Env) {
   })
   server.on('request', app)
   await new Promise<void>((resolve, reject) => server.once('error', reject).listen(env.port, resolve))
+  const catcher = env.smtpUrl === undefined ? await startCatcher(deps) : undefined
+  jobs = startJobs(deps, smtpMailer({ url: env.smtpUrl ?? catcher?.url ?? '', from: env.mailFrom }))
   process.stdout.write(greeting(env))
 
-  let closing = false
   const close = (signal: string) => {
     if (closing) process.exit(1)
     closing = true
     log.info({ signal }, 'closing')
-    server.close(() => {
-      db.$client.pragma('optimize')
-      db.$client.pragma('wal_checkpoint(TRUNCATE)')
-      db.$client.close()
-      process.exit(0)
-    })
+    const stopped = jobs?.stop()
+    server.close(() => void finish(stopped))
     server.closeIdleConnections()
     setTimeout(() => server.closeAllConnections(), 10_000).unref()
+  }
+  const finish = async (stopped?: Promise<void>) => {
+    // A letter on its way may take a minute; its lease lets the next start send it if this one cannot say it went.
+    await Promise.race([stopped, new Promise((resolve) => setTimeout(resolve, 8_000).unref())])
+    await Promise.race([catcher?.close(), new Promise((resolve) => setTimeout(resolve, 1_000).unref())])
+    db.$client.pragma('optimize')
+    db.$client.pragma('wal_checkpoint(TRUNCATE)')
+    db.$client.close()
+    process.exit(0)
   }
   process.on('SIGTERM', close)
   process.on('SIGINT', close)

@@ -1,13 +1,15 @@
 import { reminderDay } from '#shared/notices/due'
+import type { CalendarDay } from '#shared/time/day'
 import { write, type Tx } from '../db/open.ts'
 import type { Deps } from '../deps.ts'
+import { queueDigests } from '../services/notices-digest.ts'
+import { queueLoanReminders } from '../services/notices-loans.ts'
+
+type Source = (tx: Tx, deps: Deps, on: CalendarDay) => string[]
+const SOURCES: Source[] = [queueLoanReminders, queueDigests]
 
 /** Queues what has come due by the clock and gives back the ids of the letters. Running it again adds nothing. */
 export function queueNotices(deps: Deps): string[] {
-  return write(deps.db, (tx) => {
-    const on = reminderDay(deps.clock.now(), deps.clock.timeZone)
-    return SOURCES.flatMap((source) => source(tx, deps, on))
-  })
+  const on = reminderDay(deps.clock.now(), deps.clock.timeZone)
+  return write(deps.db, (tx) => SOURCES.flatMap((source) => source(tx, deps, on)))
 }
-
-const SOURCES: ((tx: Tx, deps: Deps, on: ReturnType<typeof reminderDay>) => string[])[] = []

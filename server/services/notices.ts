@@ -41,6 +41,7 @@ type Notice = { [K in NoticeKind]: Queued & { kind: K; memberId: string; facts: 
  */
 export function queueNotice(tx: Tx, deps: Deps, notice: Notice): string | undefined {
   const { kind, memberId, facts, about } = notice
+  if (isWritten(tx, notice.dedupeKey)) return undefined
   const member = tx
     .select({ name: members.name, status: members.status })
     .from(members)
@@ -48,7 +49,6 @@ export function queueNotice(tx: Tx, deps: Deps, notice: Notice): string | undefi
     .get()
   if (!member || member.status === 'left') return undefined
   if (isOptional(kind) && switchedOff(tx, memberId).includes(kind)) return undefined
-  if (isWritten(tx, notice.dedupeKey)) return undefined
   if (about && isLoanReminder(kind)) dropOlderReminders(tx, about)
   const draft = draftOf(kind, facts as never, deps.clock.timeZone)
   return queueLetter(tx, deps, { ...notice, kind, name: member.name, memberId, draft })

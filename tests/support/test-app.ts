@@ -42,6 +42,7 @@ export function testApp(options: Options = {}): TestApp {
     uploadsDir: mkdtempSync(join(tmpdir(), 'barmhouse-uploads-')),
     mailFrom: 'Barmhouse <barmhouse@barmhouse.example>',
     demo: options.demo ?? false,
+    mailCaught: true,
     mailAlive: () => true,
   }
   const app = createApp(deps, { sessionSecret: SESSION_SECRET })

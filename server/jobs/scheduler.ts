@@ -1,0 +1,59 @@
+import { sweepIdempotencyKeys } from '../http/idempotency.ts'
+import { sweepSessions } from '../http/sessions.ts'
+import type { Deps } from '../deps.ts'
+import type { Mailer } from '../mail/mailer.ts'
+import { queueNotices } from './queue-notices.ts'
+import { letterSender } from './send-letters.ts'
+import { sweepLetters } from './sweep-letters.ts'
+
+export interface Jobs {
+  /** Whether the worker that sends letters has been at it lately. */
+  alive: () => boolean
+  /** Starts nothing more and waits for what runs. */
+  stop: () => Promise<void>
+}
+
+const MINUTE_MS = 60_000
+/** So that a letter leaves within seconds of being written; an empty outbox costs one look into an index. */
+const SEND_MS = 2_000
+const DEAD_AFTER_MS = 3 * MINUTE_MS
+
+/** By the minute. Each is safe to run again at any time and catches up by itself, so there is nothing to remember between runs. */
+const BY_MINUTE: [name: string, run: (deps: Deps) => unknown][] = [['notices', queueNotices]]
+
+const HOURLY: [name: string, run: (deps: Deps) => unknown][] = [
+  ['sweep sessions', sweepSessions],
+  ['sweep idempotency keys', sweepIdempotencyKeys],
+  ['sweep letters', sweepLetters],
+]
+
+/** What runs by the clock. Short timers only: a long one overflows, and sleeps through a clock that is set. */
+export function startJobs(deps: Deps, mailer: Mailer): Jobs {
+  const sender = letterSender(deps, mailer)
+  const attempt = (name: string, run: (deps: Deps) => unknown) => {
+    try {
+      run(deps)
+    } catch (error) {
+      deps.log.error({ err: error, job: name }, 'job failed; it runs again')
+    }
+  }
+  let minutes = 0
+  const minute = () => {
+    for (const [name, run] of BY_MINUTE) attempt(name, run)
+    if (minutes++ % 60 === 0) for (const [name, run] of HOURLY) attempt(name, run)
+  }
+  const send = () =>
+    void sender.run().catch((error: unknown) => deps.log.error({ err: error, job: 'letters' }, 'job failed'))
+  const timers = [setInterval(minute, MINUTE_MS), setInterval(send, SEND_MS)]
+  for (const timer of timers) timer.unref()
+  minute()
+  send()
+  return {
+    alive: () => performance.now() - sender.lastActiveMs() < DEAD_AFTER_MS,
+    stop: async () => {
+      for (const timer of timers) clearInterval(timer)
+      await sender.stop()
+      mailer.close()
+    },
+  }
+}

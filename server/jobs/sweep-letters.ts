@@ -1,0 +1,33 @@
+import { and, inArray, lt, ne } from 'drizzle-orm'
+import { addMinutes } from '#shared/time/instant'
+import { letters, unsubscribeTokens } from '../db/schema/notices.ts'
+import type { Deps } from '../deps.ts'
+
+const DAY = 24 * 60
+/** What a letter said is kept for a month, that it was written for a little over a year. */
+const TEXT_DAYS = 30
+const ROW_DAYS = 400
+export const SWEPT_TEXT = 'What this letter said is kept for 30 days.'
+
+/** Forgets the words of old letters, then the letters, and links to stop letters that are as old. */
+export function sweepLetters(deps: Deps) {
+  const now = deps.clock.now()
+  const done = ['sent', 'failed', 'dropped'] as const
+  deps.db
+    .update(letters)
+    .set({ text: SWEPT_TEXT, html: '' })
+    .where(
+      and(
+        inArray(letters.status, done),
+        lt(letters.queuedAt, addMinutes(now, -TEXT_DAYS * DAY)),
+        ne(letters.text, SWEPT_TEXT),
+      ),
+    )
+    .run()
+  const before = addMinutes(now, -ROW_DAYS * DAY)
+  deps.db
+    .delete(letters)
+    .where(and(inArray(letters.status, done), lt(letters.queuedAt, before)))
+    .run()
+  deps.db.delete(unsubscribeTokens).where(lt(unsubscribeTokens.createdAt, before)).run()
+}
