@@ -15,8 +15,7 @@ import { smtpMailer } from './mail/smtp.ts'
 /** env → database → deps → app → jobs → listen → close. The only file that does anything by being imported. */
 async function main(env: Env) {
   const log = pino({ level: env.logLevel })
-  let jobs: Jobs | undefined
-  let closing = false
+  const running: { jobs?: Jobs; closing?: true } = {}
   const db = openDb(env.databaseFile)
   const deps: Deps = {
     db,
@@ -27,7 +26,7 @@ async function main(env: Env) {
     mailFrom: env.mailFrom,
     demo: env.demo,
     mailCaught: env.smtpUrl === undefined,
-    mailAlive: () => !closing && (jobs?.alive() ?? false),
+    mailAlive: () => !running.closing && (running.jobs?.alive() ?? false),
   }
   if (env.demo) await seedDemo(deps)
   const server = createServer({ headersTimeout: 10_000, requestTimeout: 120_000, keepAliveTimeout: 75_000 })
@@ -40,14 +39,14 @@ async function main(env: Env) {
   server.on('request', app)
   await new Promise<void>((resolve, reject) => server.once('error', reject).listen(env.port, resolve))
   const catcher = env.smtpUrl === undefined ? await startCatcher(deps) : undefined
-  jobs = startJobs(deps, smtpMailer({ url: env.smtpUrl ?? catcher?.url ?? '', from: env.mailFrom }))
+  running.jobs = startJobs(deps, smtpMailer({ url: env.smtpUrl ?? catcher?.url ?? '', from: env.mailFrom }))
   process.stdout.write(greeting(env))
 
   const close = (signal: string) => {
-    if (closing) process.exit(1)
-    closing = true
+    if (running.closing) process.exit(1)
+    running.closing = true
     log.info({ signal }, 'closing')
-    const stopped = jobs?.stop()
+    const stopped = running.jobs?.stop()
     server.close(() => void finish(stopped))
     server.closeIdleConnections()
     setTimeout(() => server.closeAllConnections(), 10_000).unref()
