@@ -2,7 +2,8 @@ import { fitNodes, gravityAt, placeOf, type Expectation, type Node, type Point }
 import {
   DONE_SG,
   FEWEST_READINGS,
-  FINISH_WIDENING,
+  FINISH_STRETCH,
+  DAY_SHARE,
   FIT_ERROR_SG,
   LAG_SHARE,
   NEAR_EXPECTED_SG,
@@ -95,9 +96,9 @@ function finishBand(nodes: readonly Node[]): { early: number; likely: number; la
   const pairs = nodes.map((node) => [finishOf(node), node.weight] as const)
   const likely = quantile(pairs, 0.5)
   return {
-    early: likely - FINISH_WIDENING * (likely - quantile(pairs, 0.1)),
+    early: likely - FINISH_STRETCH.early * (likely - quantile(pairs, 0.1)),
     likely,
-    late: likely + FINISH_WIDENING * (quantile(pairs, 0.9) - likely),
+    late: likely + FINISH_STRETCH.late * (quantile(pairs, 0.9) - likely),
   }
 }
 
@@ -217,9 +218,9 @@ export function fitFermentation(input: FermentInput): FermentForecast {
         : { low: quantile(ends, 0.1) - FIT_ERROR_SG, high: quantile(ends, 0.9) + FIT_ERROR_SG },
     finishOn: tellable
       ? {
-          early: dayOfNumber(start + finish.early),
+          early: dayOfNumber(start + Math.min(finish.likely, finish.early + DAY_SHARE)),
           likely: dayOfNumber(start + finish.likely),
-          late: dayOfNumber(start + finish.late),
+          late: dayOfNumber(start + Math.max(finish.likely, finish.late - DAY_SHARE)),
         }
       : undefined,
     curve: (instant) => gravityAt(best, at(instant)),

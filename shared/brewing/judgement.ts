@@ -194,14 +194,16 @@ export const FIT_ERROR_SG = 0.0011
 export const OG_PRIOR_SG = 0.003
 export const FG_PRIOR_SG = 0.003
 /** Log of the rate per day: cider 0.4–0.9, fed mead 0.3–0.7, unfed mead 0.05–0.2, beer 1–2. From memory, weak. */
-export const RATE_PRIOR = { mean: Math.log(0.45), sd: 0.8 } as const
+export const RATE_PRIOR = { mean: Math.log(0.35), sd: 0.9 } as const
 /** Finished, for a date: this much or less still to fall. */
 export const DONE_SG = 0.001
 /** Fewest readings, and fewest days between the first and last, from which anything is said. */
 export const FEWEST_READINGS = 3
 export const SHORTEST_SPAN_DAYS = 1
-/** The band of the date is widened about its middle by this: real ferments bend away from both shapes. */
-export const FINISH_WIDENING = 0.8
+/** The band of the date is stretched about its middle by this on each side: real tails run longer than either shape. */
+export const FINISH_STRETCH = { early: 0.8, late: 1 } as const
+/** Days are whole: an end of the band takes in a day only if it covers more than this share of it. */
+export const DAY_SHARE = 0.35
 /** A finish band wider than this helps nobody plan. */
 export const WIDEST_BAND_DAYS = 42
 /** Stuck: flat, this far above what was expected, and this much likelier than a ferment still under way. */
