@@ -123,8 +123,11 @@ function oddsOfHalt(points: readonly Point[], expected: Expectation): number {
     const span = last.t - halt
     if (span < STUCK_SPAN_DAYS.least) continue
     if (span > STUCK_SPAN_DAYS.most) break
-    const nodes = fitNodes(points.slice(0, from + 1), expected)
     const after = points.slice(from + 1)
+    // Clearly still falling since then: no need to fit.
+    const fell = (points[from] as Point).gravity - after.reduce((sum, p) => sum + p.gravity, 0) / after.length
+    if (fell > 3 * FIT_ERROR_SG) continue
+    const nodes = fitNodes(points.slice(0, from + 1), expected)
     let goesOn = 0
     let halted = 0
     for (const node of nodes) {

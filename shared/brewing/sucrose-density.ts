@@ -42,7 +42,9 @@ export function sucroseDensity({ brix, temperatureC }: { brix: number; temperatu
 
 /** Composition (°Bx, may be negative) of the solution of a given density. kg/m³, °C. */
 export function brixOfDensity(density: number, temperatureC: number): number {
-  return solve((brix) => densityOfSolution(brix, temperatureC), density, -15, 75)
+  const brix = solve((b) => densityOfSolution(b, temperatureC), density, -15, 75)
+  // Water is 0, not the last digit of a search.
+  return Math.abs(brix) < 1e-10 ? 0 : brix
 }
 
 const SG_LOW = 0.97
