@@ -1,6 +1,7 @@
 import { pathToFileURL } from 'node:url'
 import { correctGravity, fitFermentation, lotBelief, mustFromIngredients } from '#shared/brewing/index'
-import { dayOf, instantOf, normal, seeded, trueGravity, type Ferment } from '#tests/support/ferments'
+import { dayOf, instantOf, normal, trueGravity, type Ferment } from '#tests/support/ferments'
+import { seeded } from '#tests/support/random'
 
 export interface BenchLine {
   name: string
@@ -31,7 +32,7 @@ const MEAD: Ferment = { shape: 'gompertz', rate: 0.32, delay: 1.6, og: 1.102, fg
 
 /** Sixty readings over three weeks, one point of noise. */
 function sixtyReadings(): { at: string; gravity: number }[] {
-  const random = seeded(60)
+  const random = seeded(60).next
   return Array.from({ length: 60 }, (_, i) => {
     const days = 0.2 + (21 * i) / 59
     return { at: instantOf(days), gravity: trueGravity(MEAD, days) + 0.001 * normal(random) }

@@ -1,16 +1,5 @@
 import { shareLeft, placeOf, type Shape } from '#shared/brewing/ferment-grid'
 
-/** Seeded numbers between 0 and 1 (mulberry32), so that a run of invented ferments can be repeated. */
-export function seeded(seed: number): () => number {
-  let a = seed
-  return () => {
-    a = (a + 0x6d2b79f5) | 0
-    let t = Math.imul(a ^ (a >>> 15), 1 | a)
-    t = (t + Math.imul(t ^ (t >>> 7), 61 | t)) ^ t
-    return ((t ^ (t >>> 14)) >>> 0) / 4294967296
-  }
-}
-
 export function normal(random: () => number): number {
   return Math.sqrt(-2 * Math.log(1 - random())) * Math.cos(2 * Math.PI * random())
 }
