@@ -3,6 +3,7 @@ import { write, type Tx } from '../open.ts'
 import type { Deps } from '../../deps.ts'
 import { hashPassword } from '../../services/passwords.ts'
 import { DEMO_PASSWORD, seedPeople } from './people.ts'
+import { seedYeast } from './yeast.ts'
 
 /** What each domain's part of the demo is given: the people by login, the kinds and items by a short name as they come. */
 export interface SeedContext {
@@ -24,4 +25,4 @@ export async function seedDemo(deps: Deps) {
 }
 
 /** One per domain, in the order they build on each other. */
-const PARTS: ((context: SeedContext) => void)[] = []
+const PARTS: ((context: SeedContext) => void)[] = [seedYeast]

@@ -108,7 +108,7 @@ function beliefAt(deps: Deps, tx: Tx, found: Loaded, batch: BatchRow, milli: num
   }
 }
 
-/** What is left of a packet is open from now on; a planned batch ferments from now on. */
+/** What is left of a packet is open from now on (a jar of slurry never was sealed); a planned batch ferments from now on. */
 function afterPitch(
   deps: Deps,
   tx: Tx,
@@ -119,7 +119,7 @@ function afterPitch(
   const on = dayAt(at, deps.clock.timeZone)
   const now = deps.clock.now()
   const rest = packet.remainingMilli - milli
-  const opens = rest > 0 && (packet.openedOn === null || packet.openedOn > on)
+  const opens = packet.form !== 'slurry' && rest > 0 && (packet.openedOn === null || packet.openedOn > on)
   tx.update(packets)
     .set({ ...(opens && { openedOn: on }), updatedAt: now, version: packet.version + 1 })
     .where(eq(packets.id, packet.id))
