@@ -43,7 +43,7 @@ export const FRIDGE: SeedPacket[] = [
       lotCode: 'F71-0924',
       place: 'Top shelf',
       initial: 11.5,
-      left: 5.3,
+      left: 7.4,
     },
     ...{ madeDaysAgo: 500, bestBeforeInDays: 17, openedDaysAgo: 147, addedDaysAgo: 320 },
   },
