@@ -14,6 +14,7 @@ import { staticClient } from './http/static.ts'
 import { batchRoutes } from './routes/batches.ts'
 import { docsRoutes } from './routes/docs.ts'
 import { peopleRoutes } from './routes/people.ts'
+import { spaceRoutes } from './routes/space.ts'
 import { sessionRoutes } from './routes/session.ts'
 import { yeastRoutes } from './routes/yeast.ts'
 
@@ -67,4 +68,5 @@ const apiRoutes = (deps: Deps): Router[] => [
   peopleRoutes(deps),
   batchRoutes(deps),
   yeastRoutes(deps),
+  spaceRoutes(deps),
 ]

@@ -10,10 +10,12 @@ export interface Clock {
 }
 
 /** A clock over any source of milliseconds: the system's, or a test's own. */
-export const clockFrom = (milliseconds: () => number, timeZone: string): Clock => ({
-  timeZone,
+export const clockFrom = (milliseconds: () => number, timeZone: () => string): Clock => ({
+  get timeZone() {
+    return timeZone()
+  },
   now: () => toInstant(milliseconds()),
-  today: () => dayAt(toInstant(milliseconds()), timeZone),
+  today: () => dayAt(toInstant(milliseconds()), timeZone()),
 })
 
-export const systemClock = (timeZone: string) => clockFrom(Date.now, timeZone)
+export const systemClock = (timeZone: () => string) => clockFrom(Date.now, timeZone)

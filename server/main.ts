@@ -11,6 +11,7 @@ import { greeting } from './greeting.ts'
 import { startJobs, type Jobs } from './jobs/scheduler.ts'
 import { startCatcher } from './mail/catcher.ts'
 import { smtpMailer } from './mail/smtp.ts'
+import { zoneReader } from './services/space.ts'
 
 /** env → database → deps → app → jobs → listen → close. The only file that does anything by being imported. */
 async function main(env: Env) {
@@ -19,7 +20,7 @@ async function main(env: Env) {
   const db = openDb(env.databaseFile)
   const deps: Deps = {
     db,
-    clock: systemClock(env.timeZone),
+    clock: systemClock(zoneReader(db, env.timeZone)),
     log,
     appUrl: env.appUrl,
     uploadsDir: env.uploadsDir,

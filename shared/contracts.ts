@@ -1,6 +1,7 @@
 import { batchEndpoints } from './batches/contract.ts'
 import type { Endpoints } from './http/endpoint.ts'
 import { peopleEndpoints } from './people/contract.ts'
+import { spaceEndpoints } from './space/contract.ts'
 import { sessionEndpoints } from './session/contract.ts'
 import { yeastEndpoints } from './yeast/contract.ts'
 
@@ -10,4 +11,5 @@ export const contracts: Record<string, Endpoints> = {
   people: peopleEndpoints,
   batches: batchEndpoints,
   yeast: yeastEndpoints,
+  space: spaceEndpoints,
 }

@@ -6,6 +6,7 @@ import type { FieldError } from '#shared/http/problem'
 import { roleCovers } from '#shared/people/vocabulary'
 import type { Deps } from '../deps.ts'
 import { AppError, invalidField } from '../errors.ts'
+import { auditor } from './auditor.ts'
 import { answerOnce } from './idempotency.ts'
 import type { SignedIn } from './sessions.ts'
 
@@ -50,15 +51,24 @@ export function serve<C extends Endpoints>(deps: Deps, endpoints: C, handlers: H
   const router = Router()
   for (const [name, spec] of Object.entries(endpoints)) {
     const handler = handlers[name] as unknown as (input: unknown, call: unknown) => unknown
-    const steps: RequestHandler[] = [(_req, res, next) => (admit(spec, res.locals.user), next())]
+    const audit = auditor(deps, spec)
+    const steps: RequestHandler[] = [
+      (req, res, next) => {
+        audit.refusals(req, res.locals.user, () => admit(spec, res.locals.user))
+        next()
+      },
+    ]
     if (spec.upload) steps.push(uploads.single(spec.upload))
     steps.push(async (req, res) => {
       const input = validate(spec, req)
       const call = { user: res.locals.user, req, res, ...extras(spec, req) }
       const run = () => handler(input, call)
-      if (spec.creates)
-        await answerOnce({ deps, spec, req, res, run, send: (answer) => send(spec, res, answer) })
-      else send(spec, res, await run())
+      const done = (answer: unknown) => {
+        audit.done(req, res.locals.user)
+        send(spec, res, answer)
+      }
+      if (spec.creates) await answerOnce({ deps, spec, req, res, run, send: done })
+      else done(await run())
     })
     router[spec.method.toLowerCase() as 'get'](spec.path, ...steps)
   }

@@ -8,7 +8,7 @@ import { askToLeave } from '../services/erasure.ts'
 import { exportOf } from '../services/own-data.ts'
 import { endOwnSession, endSessionsOf, ownSessions } from '../services/own-sessions.ts'
 import { editMe, editMember, getMember, listMembers, meOf } from '../services/people.ts'
-import { spaceBrief } from '../services/session.ts'
+import { spaceBrief } from '../services/space.ts'
 
 export const peopleRoutes = (deps: Deps) =>
   serve(deps, peopleEndpoints, {

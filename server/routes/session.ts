@@ -2,13 +2,15 @@ import { sessionEndpoints } from '#shared/session/contract'
 import type { Deps } from '../deps.ts'
 import { serve } from '../http/serve.ts'
 import { startSession, endSession } from '../http/sessions.ts'
-import { checkCredentials, spaceBrief } from '../services/session.ts'
+import { checkCredentials } from '../services/session.ts'
+import { spaceBrief } from '../services/space.ts'
 
 export const sessionRoutes = (deps: Deps) =>
   serve(deps, sessionEndpoints, {
-    signIn: async ({ body }, { req }) => {
+    signIn: async ({ body }, { req, res }) => {
       const member = await checkCredentials(deps, body.email, body.password)
       await startSession(deps, req, member)
+      res.locals.user = member
       return { member, space: spaceBrief(deps) }
     },
     current: (_input, { user }) => ({ member: user, space: spaceBrief(deps) }),

@@ -16,7 +16,7 @@ import type { Deps } from '../deps.ts'
 import { newId } from '../ids.ts'
 import { draftOf, type NoticeFacts } from '../mail/letters/drafts.ts'
 import { layOut, type Draft } from '../mail/letters/letter.ts'
-import { spaceBrief } from './session.ts'
+import { spaceBrief } from './space.ts'
 
 interface About {
   type: LetterSubject
@@ -78,7 +78,7 @@ export function queueLetter(
       aboutType: about?.type ?? null,
       aboutId: about?.id ?? null,
       aboutOn: about?.on ?? null,
-      ...layOut(letter.draft, { name: letter.name, space: spaceBrief(deps).name, appUrl: deps.appUrl }),
+      ...layOut(letter.draft, { name: letter.name, space: spaceBrief(deps, tx).name, appUrl: deps.appUrl }),
       messageId: `<${id}@${new URL(deps.appUrl).hostname}>`,
       inReplyTo: about ? (firstOfThread(tx, about) ?? null) : null,
       queuedAt: now,

@@ -1,9 +1,10 @@
 import { eq } from 'drizzle-orm'
-import { SpaceBrief, SignedInMember } from '#shared/session/contract'
+import { SignedInMember } from '#shared/session/contract'
 import { members } from '../db/schema/people.ts'
 import type { Deps } from '../deps.ts'
 import { AppError } from '../errors.ts'
 import { countFailure, forgetFailures, refuseWhileThrottled } from '../http/sign-in-throttle.ts'
+import { recordAudit } from './audit.ts'
 import { hashPassword, needsRehash, passwordMatches } from './passwords.ts'
 
 /**
@@ -18,6 +19,7 @@ export async function checkCredentials(deps: Deps, email: string, password: stri
   const member = row?.status === 'left' ? undefined : row
   if (!(await passwordMatches(member?.passwordHash ?? null, password)) || !member) {
     countFailure(deps, key)
+    recordAudit(deps, { actorId: member?.id, action: 'POST /session', outcome: 'signed-out' })
     throw new AppError(
       'signed-out',
       'That e-mail address and password do not go together. Check both and try again.',
@@ -30,11 +32,3 @@ export async function checkCredentials(deps: Deps, email: string, password: stri
   }
   return SignedInMember.parse(member)
 }
-
-export const spaceBrief = (deps: Deps): SpaceBrief => ({
-  name: deps.demo ? 'Copperwell Cellar' : 'Barmhouse',
-  timeZone: deps.clock.timeZone,
-  currency: 'GBP',
-  demo: deps.demo,
-  today: deps.clock.today(),
-})

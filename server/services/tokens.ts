@@ -24,7 +24,7 @@ interface Issue {
 }
 
 /** Makes a link's secret, keeps its digest, and voids the earlier ones for the same thing. */
-export function issueToken(tx: Tx, deps: Deps, issue: Issue) {
+export function issueToken(tx: Tx, deps: Pick<Deps, 'clock'>, issue: Issue) {
   const now = deps.clock.now()
   const same = issue.memberId ? eq(tokens.memberId, issue.memberId) : eq(tokens.email, issue.email)
   tx.update(tokens)

@@ -27,6 +27,8 @@ export interface Endpoint {
   upload?: string
   /** Answers with a file of this media type in place of JSON. */
   file?: string
+  /** Goes into the audit trail though any member may do it. */
+  audited?: true
   /** Not personal: may be kept by the browser and asked again by ETag. */
   cache?: 'revalidate'
 }

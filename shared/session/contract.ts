@@ -37,6 +37,7 @@ export const sessionEndpoints = {
     path: '/session',
     access: 'anyone',
     summary: 'Sign in: starts a cookie session.',
+    audited: true,
     body: Credentials,
     reply: Session,
   }),

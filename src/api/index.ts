@@ -1,5 +1,6 @@
 import { batchEndpoints } from '#shared/batches/contract'
 import { peopleEndpoints } from '#shared/people/contract'
+import { spaceEndpoints } from '#shared/space/contract'
 import { sessionEndpoints } from '#shared/session/contract'
 import { yeastEndpoints } from '#shared/yeast/contract'
 import { createClient } from './client.ts'
@@ -8,6 +9,7 @@ import { createClient } from './client.ts'
 export const api = {
   session: createClient(sessionEndpoints),
   people: createClient(peopleEndpoints),
+  space: createClient(spaceEndpoints),
   batches: createClient(batchEndpoints),
   yeast: createClient(yeastEndpoints),
 }

@@ -1,4 +1,5 @@
 import { members } from '../schema/people.ts'
+import { space } from '../schema/space.ts'
 import { write, type Tx } from '../open.ts'
 import type { Deps } from '../../deps.ts'
 import { hashPassword } from '../../services/passwords.ts'
@@ -18,6 +19,7 @@ export async function seedDemo(deps: Deps) {
   if (deps.db.select({ id: members.id }).from(members).limit(1).get()) return
   const passwordHash = await hashPassword(DEMO_PASSWORD)
   write(deps.db, (tx) => {
+    tx.update(space).set({ name: 'Copperwell Cellar', demo: true, roomM3: 64, airChangesPerHour: 0.7 }).run()
     const people = seedPeople(deps, tx, passwordHash)
     const context: SeedContext = { deps, tx, people }
     for (const part of PARTS) part(context)
