@@ -18,7 +18,6 @@ export function safeNext(wanted: unknown): string {
 export function guard(router: Router, gate: Gate) {
   router.beforeEach(async (to) => {
     const access = to.meta.access ?? 'member'
-    if (to.name === 'gallery') return true
     await gate.ready()
     const role = gate.role()
     if (to.name === 'sign-in' && role !== undefined) return safeNext(to.query.next)
