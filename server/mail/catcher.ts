@@ -78,7 +78,7 @@ function keep(deps: Deps, caught: Caught) {
     .select({ id: caughtLetters.id })
     .from(caughtLetters)
     .orderBy(desc(caughtLetters.receivedAt), desc(caughtLetters.id))
-    .limit(-1)
+    .limit(10_000)
     .offset(CAUGHT_MAX)
   deps.db.delete(caughtLetters).where(inArray(caughtLetters.id, beyond)).run()
 }

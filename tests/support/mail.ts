@@ -24,13 +24,13 @@ export async function postOffice(app: TestApp) {
 }
 
 /** The worker against a relay of the test's own. Its idea of passing time is the clock the test moves. */
-export const senderTo = (app: TestApp, url: string) =>
+export const senderTo = (app: TestApp, url: string, patienceMs = 10_000) =>
   letterSender(
     app.deps,
     smtpMailer({
       url,
       from: app.deps.mailFrom,
-      timeouts: { connect: 300, greeting: 300, socket: 300, whole: 1000 },
+      timeouts: { connect: patienceMs, greeting: patienceMs, socket: patienceMs },
     }),
     () => Date.parse(app.clock.now()),
   )
@@ -100,7 +100,7 @@ function converse(socket: Socket, state: { script: Script; received: string[] })
       } else if (/^MAIL/i.test(part)) say(script.mail ?? '250 ok')
       else if (/^RCPT/i.test(part)) say(script.rcpt ?? '250 ok')
       else if (/^QUIT/i.test(part)) say('221 bye')
-      else say('250 relay.test')
+      else say(/^(EHLO|HELO|RSET|NOOP)/i.test(part) ? '250 relay.test' : '502 not here')
     }
   })
 }
