@@ -100,6 +100,8 @@ export const DOUBLE_DOSE_OG = 1.13
 export const VIABILITY_GOOD = 0.8
 export const VIABILITY_MORE = 0.5
 export const VIABILITY_PROVE = 0.2
+/** Doses are reckoned for at least this share alive: under it no weight of packets helps. */
+export const LEAST_DOSED_SHARE = 0.05
 export const PITCH_VERDICTS = ['good', 'pitch-more', 'prove-first', 'do-not-rely'] as const
 
 /** Rehydration by common practice: ten times its weight of tap water, 35–40 °C, 15–30 minutes, then within 10 °C of the must. */

@@ -3,6 +3,7 @@ import {
   CELLS_PER_GRAM,
   DOUBLE_DOSE_OG,
   HIGH_SUGAR_OG,
+  LEAST_DOSED_SHARE,
   LAG_SPREAD,
   PITCH_VERDICTS,
   REHYDRATION,
@@ -120,7 +121,7 @@ export function pitchAdvice({
   if (available !== undefined) within('availableGrams', available, 0, 100_000)
 
   // A fifth alive is the least that is worth dosing for: under it, no weight of packets helps.
-  const share = Math.max(VIABILITY_PROVE, alive.estimate)
+  const share = Math.max(LEAST_DOSED_SHARE, alive.estimate)
   const want = wanted(drink, og)
   const perGram = CELLS_PER_GRAM[kind] * share
   const gramsFor = (cellsPerMl: number): number => (cellsPerMl * volumeLitres * 1000) / perGram

@@ -297,9 +297,9 @@ describe('how much to pitch', () => {
 
   test.each([
     [0.9, 'good'],
-    [0.5, 'pitch-more'],
-    [0.15, 'prove-first'],
-    [0.02, 'do-not-rely'],
+    [0.65, 'pitch-more'],
+    [0.35, 'prove-first'],
+    [0.1, 'do-not-rely'],
   ] as const)('viability %f: %s', (viability, verdict) => {
     const advice = pitchAdvice({ form: 'dry', viability, volumeLitres: 5, og: 1.08, use: 'mead' })
     expect(advice.verdict).toBe(verdict)
