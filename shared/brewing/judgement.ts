@@ -217,3 +217,44 @@ export const LAG_SHARE = 0.04
 export const SLOWING_SHARE = 0.8
 /** A reading this many errors off the curve counts less, in proportion. */
 export const OUTLIER_ERRORS = 3
+
+// Cleaning and glass
+
+/** Thick glass bears less than the 40 °C at which ordinary soda-lime is at risk. */
+export const GLASS_WARNING_C = 30
+export const GLASS_RISK_C = 40
+/** Conditions that food codes publish; the label of the product goes before them. */
+export const SANITISERS = {
+  iodophor: {
+    stockPercent: 1.75,
+    lowMgPerLitre: 12.5,
+    highMgPerLitre: 25,
+    contactSeconds: 60,
+    lowestC: 20,
+    source: 'Utah R392-102-10 (after the FDA Food Code), California H&S 114099.6, NY 14-4.112',
+  },
+  hypochlorite: {
+    stockPercent: 5,
+    lowMgPerLitre: 50,
+    highMgPerLitre: 200,
+    contactSeconds: 60,
+    lowestC: 24,
+    source: 'NY 14-4.112, Utah R392-102-10; unrinsed ceiling 200 mg/L from memory',
+  },
+  percarbonate: {
+    stockPercent: undefined,
+    lowMgPerLitre: 10_000,
+    highMgPerLitre: 20_000,
+    contactSeconds: 900,
+    lowestC: 40,
+    source: 'common practice, from memory: a cleaner, not a food-contact sanitiser',
+  },
+  'hot-water': {
+    stockPercent: undefined,
+    lowMgPerLitre: undefined,
+    highMgPerLitre: undefined,
+    contactSeconds: 30,
+    lowestC: 77,
+    source: 'Utah R392-102-10, California H&S 114099.6 (171 °F)',
+  },
+} as const
