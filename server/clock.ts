@@ -1,5 +1,5 @@
 import type { CalendarDay } from '#shared/time/day'
-import { dayAt, toInstant, type Instant } from '#shared/time/instant'
+import { dayAt, instantMs, toInstant, type Instant } from '#shared/time/instant'
 
 /** The only source of "now" and "today". Rules take days and instants as arguments; tests pass a clock they move by hand. */
 export interface Clock {
@@ -17,5 +17,12 @@ export const clockFrom = (milliseconds: () => number, timeZone: () => string): C
   now: () => toInstant(milliseconds()),
   today: () => dayAt(toInstant(milliseconds()), timeZone()),
 })
+
+/** A clock that stands at one instant: for telling what was done then. */
+export const clockAt = (instant: Instant, timeZone: string) =>
+  clockFrom(
+    () => instantMs(instant),
+    () => timeZone,
+  )
 
 export const systemClock = (timeZone: () => string) => clockFrom(Date.now, timeZone)

@@ -2,8 +2,10 @@ import { sweepIdempotencyKeys } from '../http/idempotency.ts'
 import { sweepSessions } from '../http/sessions.ts'
 import type { Deps } from '../deps.ts'
 import type { Mailer } from '../mail/mailer.ts'
+import { backUpHourly } from './hourly-backup.ts'
 import { queueNotices } from './queue-notices.ts'
 import { letterSender } from './send-letters.ts'
+import { sweepAccounts } from './sweep-accounts.ts'
 import { sweepLetters } from './sweep-letters.ts'
 
 export interface Jobs {
@@ -25,16 +27,19 @@ const HOURLY: [name: string, run: (deps: Deps) => unknown][] = [
   ['sweep sessions', sweepSessions],
   ['sweep idempotency keys', sweepIdempotencyKeys],
   ['sweep letters', sweepLetters],
+  ['sweep accounts', sweepAccounts],
+  ['back up', backUpHourly],
 ]
 
 /** What runs by the clock. Short timers only: a long one overflows, and sleeps through a clock that is set. */
 export function startJobs(deps: Deps, mailer: Mailer): Jobs {
   const sender = letterSender(deps, mailer)
   const attempt = (name: string, run: (deps: Deps) => unknown) => {
+    const failed = (error: unknown) => deps.log.error({ err: error, job: name }, 'job failed; it runs again')
     try {
-      run(deps)
+      void Promise.resolve(run(deps)).catch(failed)
     } catch (error) {
-      deps.log.error({ err: error, job: name }, 'job failed; it runs again')
+      failed(error)
     }
   }
   let minutes = 0

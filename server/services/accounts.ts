@@ -89,7 +89,7 @@ export function askReset(deps: Deps, email: string) {
       kind: 'account-reset',
       memberId: member.id,
       name: member.name,
-      facts: { path: `/password-resets/${secret}` },
+      facts: { path: `/forgotten/${secret}` },
       dedupeKey: `reset:${id}`,
     })
   })

