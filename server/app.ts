@@ -13,6 +13,7 @@ import { knowMember, sessionCookie } from './http/sessions.ts'
 import { staticClient } from './http/static.ts'
 import { batchRoutes } from './routes/batches.ts'
 import { docsRoutes } from './routes/docs.ts'
+import { larderRoutes, tabRoutes } from './routes/larder.ts'
 import { peopleRoutes } from './routes/people.ts'
 import { spaceRoutes } from './routes/space.ts'
 import { sessionRoutes } from './routes/session.ts'
@@ -69,4 +70,6 @@ const apiRoutes = (deps: Deps): Router[] => [
   batchRoutes(deps),
   yeastRoutes(deps),
   spaceRoutes(deps),
+  larderRoutes(deps),
+  tabRoutes(deps),
 ]

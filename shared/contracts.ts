@@ -2,6 +2,8 @@ import { batchEndpoints } from './batches/contract.ts'
 import type { Endpoints } from './http/endpoint.ts'
 import { peopleEndpoints } from './people/contract.ts'
 import { spaceEndpoints } from './space/contract.ts'
+import { larderEndpoints } from './larder/contract.ts'
+import { tabEndpoints } from './larder/tab-contract.ts'
 import { sessionEndpoints } from './session/contract.ts'
 import { yeastEndpoints } from './yeast/contract.ts'
 
@@ -12,4 +14,6 @@ export const contracts: Record<string, Endpoints> = {
   batches: batchEndpoints,
   yeast: yeastEndpoints,
   space: spaceEndpoints,
+  larder: larderEndpoints,
+  tabs: tabEndpoints,
 }

@@ -1,4 +1,4 @@
-import { Router, type Request, type RequestHandler, type Response } from 'express'
+import { Router, text, type Request, type RequestHandler, type Response } from 'express'
 import multer from 'multer'
 import type { z } from 'zod'
 import type { Access, Endpoint, Endpoints, Given, Received } from '#shared/http/endpoint'
@@ -46,6 +46,24 @@ const uploads = multer({
   limits: { fileSize: 8 * 1024 * 1024, files: 1, fields: 8, parts: 9, fieldSize: 4096 },
 })
 
+const readText = text({ type: 'text/csv', limit: '8mb' })
+
+/** Takes a file sent as the bare body for what the form's field would have brought; refuses it everywhere else. */
+const bareFile =
+  (spec: Endpoint): RequestHandler =>
+  (req, res, next) => {
+    if (!req.is('text/csv')) return next()
+    if (spec.uploadType !== 'text/csv')
+      throw new AppError('wrong-media-type', 'Send JSON, with Content-Type: application/json.')
+    readText(req, res, (error?: unknown) => {
+      if (error) return next(error)
+      const body: unknown = req.body
+      req.file = { buffer: Buffer.from(typeof body === 'string' ? body : '') } as Express.Multer.File
+      req.body = undefined
+      next()
+    })
+  }
+
 /** Turns a contract and its handlers into routes: admit, validate, handle, cut the reply to its schema. */
 export function serve<C extends Endpoints>(deps: Deps, endpoints: C, handlers: Handlers<C>): Router {
   const router = Router()
@@ -59,6 +77,7 @@ export function serve<C extends Endpoints>(deps: Deps, endpoints: C, handlers: H
       },
     ]
     if (spec.upload) steps.push(uploads.single(spec.upload))
+    steps.push(bareFile(spec))
     steps.push(async (req, res) => {
       const input = validate(spec, req)
       const call = { user: res.locals.user, req, res, ...extras(spec, req) }

@@ -25,6 +25,8 @@ export interface Endpoint {
   versioned?: true
   /** Multipart with one file in this field. */
   upload?: string
+  /** The file may also come as the bare body, under this media type. */
+  uploadType?: 'text/csv'
   /** Answers with a file of this media type in place of JSON. */
   file?: string
   /** Goes into the audit trail though any member may do it. */

@@ -65,6 +65,7 @@ function operation(domain: string, name: string, spec: Endpoint): Json {
       requestBody: {
         required: true,
         content: {
+          ...(spec.uploadType && { [spec.uploadType]: { schema: { type: 'string' } } }),
           'multipart/form-data': {
             schema: {
               type: 'object',

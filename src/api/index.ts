@@ -1,6 +1,8 @@
 import { batchEndpoints } from '#shared/batches/contract'
 import { peopleEndpoints } from '#shared/people/contract'
 import { spaceEndpoints } from '#shared/space/contract'
+import { larderEndpoints } from '#shared/larder/contract'
+import { tabEndpoints } from '#shared/larder/tab-contract'
 import { sessionEndpoints } from '#shared/session/contract'
 import { yeastEndpoints } from '#shared/yeast/contract'
 import { createClient } from './client.ts'
@@ -12,4 +14,6 @@ export const api = {
   space: createClient(spaceEndpoints),
   batches: createClient(batchEndpoints),
   yeast: createClient(yeastEndpoints),
+  larder: createClient(larderEndpoints),
+  tabs: createClient(tabEndpoints),
 }
