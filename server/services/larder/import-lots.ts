@@ -6,7 +6,7 @@ import { write } from '../../db/open.ts'
 import type { Deps } from '../../deps.ts'
 import { AppError, invalidField } from '../../errors.ts'
 import { readCsv } from '../../http/csv.ts'
-import { spaceBrief } from '../session.ts'
+import { spaceBrief } from '../space.ts'
 import { addLot } from './lots.ts'
 
 const ROWS_MAX = 1000

@@ -14,7 +14,7 @@ import { AppError, invalidField, notFound } from '../../errors.ts'
 import { decodeCursor, pageFrom } from '../../http/cursor.ts'
 import type { SignedIn } from '../../http/sessions.ts'
 import { newId } from '../../ids.ts'
-import { spaceBrief } from '../session.ts'
+import { spaceBrief } from '../space.ts'
 import { ingredientRow, type IngredientRow } from './ingredients.ts'
 import { recordMove } from './moves.ts'
 

@@ -5,7 +5,7 @@ import { fromMilli, toMilli } from '#shared/larder/quantity'
 import { quantityToBuy } from '#shared/larder/stock'
 import { ingredients, lots } from '../../db/schema/larder.ts'
 import type { Deps } from '../../deps.ts'
-import { spaceBrief } from '../session.ts'
+import { spaceBrief } from '../space.ts'
 import { parLevelOf, readHoldings } from './holdings.ts'
 
 /** What brings every ingredient back to its par level after the planned batches took theirs; four statements. */

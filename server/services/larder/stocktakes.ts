@@ -10,7 +10,7 @@ import type { Deps } from '../../deps.ts'
 import { AppError, notFound } from '../../errors.ts'
 import { decodeCursor, pageFrom } from '../../http/cursor.ts'
 import { newId } from '../../ids.ts'
-import { spaceBrief } from '../session.ts'
+import { spaceBrief } from '../space.ts'
 import { recordMove } from './moves.ts'
 
 type Line = StocktakeRequest['lines'][number]

@@ -13,7 +13,7 @@ import type { Deps } from '../../deps.ts'
 import { notFound } from '../../errors.ts'
 import type { SignedIn } from '../../http/sessions.ts'
 import { newId } from '../../ids.ts'
-import { spaceBrief } from '../session.ts'
+import { spaceBrief } from '../space.ts'
 
 interface Period {
   from?: CalendarDay | undefined
