@@ -95,6 +95,12 @@ export function monthEnd(on: CalendarDay): CalendarDay {
   return addDays(monthStart(on, 1), -1)
 }
 
+/** The same day of a later month, or that month's last: `addMonths('2026-01-31', 1)` is `2026-02-28`. */
+export function addMonths(on: CalendarDay, months: number): CalendarDay {
+  const sameDay = addDays(monthStart(on, months), Number(on.slice(8, 10)) - 1)
+  return earlierDay(sameDay, monthEnd(monthStart(on, months)))
+}
+
 export function earlierDay(a: CalendarDay, b: CalendarDay): CalendarDay {
   return a < b ? a : b
 }
