@@ -14,6 +14,7 @@ import { staticClient } from './http/static.ts'
 import { batchRoutes } from './routes/batches.ts'
 import { docsRoutes } from './routes/docs.ts'
 import { larderRoutes, tabRoutes } from './routes/larder.ts'
+import { kitRoutes } from './routes/kit.ts'
 import { peopleRoutes } from './routes/people.ts'
 import { spaceRoutes } from './routes/space.ts'
 import { sessionRoutes } from './routes/session.ts'
@@ -67,6 +68,7 @@ const LINKS = [
 const apiRoutes = (deps: Deps): Router[] => [
   sessionRoutes(deps),
   peopleRoutes(deps),
+  kitRoutes(deps),
   batchRoutes(deps),
   yeastRoutes(deps),
   spaceRoutes(deps),

@@ -4,6 +4,7 @@ import { peopleEndpoints } from './people/contract.ts'
 import { spaceEndpoints } from './space/contract.ts'
 import { larderEndpoints } from './larder/contract.ts'
 import { tabEndpoints } from './larder/tab-contract.ts'
+import { kitEndpoints } from './kit/contract.ts'
 import { sessionEndpoints } from './session/contract.ts'
 import { yeastEndpoints } from './yeast/contract.ts'
 
@@ -11,6 +12,7 @@ import { yeastEndpoints } from './yeast/contract.ts'
 export const contracts: Record<string, Endpoints> = {
   session: sessionEndpoints,
   people: peopleEndpoints,
+  kit: kitEndpoints,
   batches: batchEndpoints,
   yeast: yeastEndpoints,
   space: spaceEndpoints,

@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { endpoint } from '../http/endpoint.ts'
-import { Id, line, prose } from '../http/fields.ts'
+import { Id, line, prose, queryFlag } from '../http/fields.ts'
 import { pageOf, pageQuery } from '../http/paging.ts'
 import { CalendarDay } from '../time/day.ts'
 import { Instant } from '../time/instant.ts'
@@ -96,6 +96,8 @@ export type ItemHistoryEntry = z.output<typeof ItemHistoryEntry>
 /** What became, or would become, of each row of an imported list. */
 export const ItemImport = z.object({
   dryRun: z.boolean(),
+  /** False for a dry run, and when any row was refused: a list is brought in whole or not at all. */
+  written: z.boolean(),
   added: z.int(),
   changed: z.int(),
   unchanged: z.int(),
@@ -118,7 +120,7 @@ export const itemEndpoints = {
     method: 'GET',
     path: '/items',
     access: 'member',
-    summary: 'Items by tag; retired and lost ones when asked for by status.',
+    summary: 'Items by tag, with the retired and the lost; by status for the others.',
     query: z.object({
       ...pageQuery,
       kindId: Id.optional(),
@@ -179,7 +181,7 @@ export const itemEndpoints = {
     path: '/items/import',
     access: 'steward',
     summary: 'Adds and changes items from CSV by tag; with dryRun, says row by row what would happen.',
-    query: z.object({ dryRun: z.enum(['1', '0', 'true', 'false']).optional() }),
+    query: z.object({ dryRun: queryFlag.optional() }),
     upload: 'file',
     reply: ItemImport,
   }),

@@ -3,6 +3,7 @@ import { peopleEndpoints } from '#shared/people/contract'
 import { spaceEndpoints } from '#shared/space/contract'
 import { larderEndpoints } from '#shared/larder/contract'
 import { tabEndpoints } from '#shared/larder/tab-contract'
+import { kitEndpoints } from '#shared/kit/contract'
 import { sessionEndpoints } from '#shared/session/contract'
 import { yeastEndpoints } from '#shared/yeast/contract'
 import { createClient } from './client.ts'
@@ -12,6 +13,7 @@ export const api = {
   session: createClient(sessionEndpoints),
   people: createClient(peopleEndpoints),
   space: createClient(spaceEndpoints),
+  kit: createClient(kitEndpoints),
   batches: createClient(batchEndpoints),
   yeast: createClient(yeastEndpoints),
   larder: createClient(larderEndpoints),

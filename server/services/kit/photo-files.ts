@@ -1,0 +1,52 @@
+import { createReadStream, existsSync } from 'node:fs'
+import { mkdir, readdir, rename, rm, stat, writeFile } from 'node:fs/promises'
+import { join } from 'node:path'
+import type { Deps } from '../../deps.ts'
+import type { RedrawnPhoto } from './photo-image.ts'
+
+export type PhotoSize = 'thumb' | 'full'
+
+const folder = (deps: Deps) => join(deps.uploadsDir, 'kit')
+const pathOf = (deps: Deps, name: string, size: PhotoSize) => join(folder(deps), `${name}.${size}.webp`)
+
+/** Puts both sizes on disk, each under a name nobody chose; a half-written file never has its final name. */
+export async function keepPhotoFiles(deps: Deps, name: string, photo: RedrawnPhoto) {
+  await mkdir(folder(deps), { recursive: true, mode: 0o700 })
+  for (const size of ['full', 'thumb'] as const) {
+    const path = pathOf(deps, name, size)
+    await writeFile(`${path}.part`, photo[size], { mode: 0o600 })
+    await rename(`${path}.part`, path)
+  }
+}
+
+/** Takes a photo's files away, whole or half-written. */
+export async function dropPhotoFiles(deps: Deps, name: string) {
+  for (const size of ['full', 'thumb'] as const) {
+    const path = pathOf(deps, name, size)
+    await rm(path, { force: true })
+    await rm(`${path}.part`, { force: true })
+  }
+}
+
+/** Undefined when the file has gone. */
+export function openPhotoFile(deps: Deps, name: string, size: PhotoSize) {
+  const path = pathOf(deps, name, size)
+  return existsSync(path) ? createReadStream(path) : undefined
+}
+
+/** Files that no row names and that are older than an hour, as names of photos. */
+export async function strayPhotoFiles(
+  deps: Deps,
+  known: ReadonlySet<string>,
+  nowMs: number,
+): Promise<string[]> {
+  const files = await readdir(folder(deps)).catch(() => [] as string[])
+  const strays = new Set<string>()
+  for (const file of files) {
+    const name = /^([\w-]+)\.(?:full|thumb)\.webp(?:\.part)?$/.exec(file)?.[1]
+    if (name === undefined || known.has(name)) continue
+    const { mtimeMs } = await stat(join(folder(deps), file))
+    if (nowMs - mtimeMs > 3_600_000) strays.add(name)
+  }
+  return [...strays]
+}
