@@ -158,7 +158,9 @@ function validate(spec: Endpoint, req: Request): Record<string, unknown> {
   else refuseUnknown(req.query, errors)
   if (spec.body) input.body = take(spec.body, spec.upload ? { ...(req.body as object) } : (req.body ?? {}))
   else if (!spec.upload) refuseUnknown(req.body, errors)
-  if (errors.length > 0) throw schemaError(errors)
+  // One message a field: the first thing wrong with it is the thing to mend.
+  const first = errors.filter((error, at) => errors.findIndex(({ path }) => path === error.path) === at)
+  if (first.length > 0) throw schemaError(first)
   return input
 }
 

@@ -1,8 +1,5 @@
 import { addMonths, type CalendarDay } from '../time/day.ts'
 
-/** The largest offset worth keeping, in SG: an instrument further out than this is broken or misread. */
-export const MAX_OFFSET_SG = 0.02
-
 /** The day by which a hydrometer should be checked in water again; undefined when its kind asks for no checks. */
 export function calibrationDueOn(
   item: { calibratedOn: CalendarDay | null; addedOn: CalendarDay },
