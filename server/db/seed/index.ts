@@ -4,6 +4,7 @@ import { write, type Tx } from '../open.ts'
 import type { Deps } from '../../deps.ts'
 import { hashPassword } from '../../services/passwords.ts'
 import { DEMO_PASSWORD, seedPeople } from './people.ts'
+import { seedLarder } from './larder.ts'
 import { seedYeast } from './yeast.ts'
 
 /** What each domain's part of the demo is given: the people by login, the kinds and items by a short name as they come. */
@@ -27,4 +28,4 @@ export async function seedDemo(deps: Deps) {
 }
 
 /** One per domain, in the order they build on each other. */
-const PARTS: ((context: SeedContext) => void)[] = [seedYeast]
+const PARTS: ((context: SeedContext) => void)[] = [seedYeast, seedLarder]

@@ -23,7 +23,13 @@ export function seedYeast({ deps, people }: SeedContext) {
   const ago = (days: number) => addDays(today, -days)
   const at = (daysAgo: number): Deps => {
     const then = addMinutes(now, -Math.round(daysAgo * 24 * 60))
-    return { ...deps, clock: clockFrom(() => instantMs(then), () => deps.clock.timeZone) }
+    return {
+      ...deps,
+      clock: clockFrom(
+        () => instantMs(then),
+        () => deps.clock.timeZone,
+      ),
+    }
   }
   const someone = (login: string): SignedIn => {
     const id = people[login]
