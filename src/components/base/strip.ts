@@ -22,14 +22,25 @@ export function blocksOf(free: number, total: number): number {
   return Math.ceil(free / Math.max(1, Math.ceil(total / 10)))
 }
 
-/** Whole weeks, Monday first; `undefined` where a week reaches beyond the days given. */
-export function weeksOf(days: readonly StripDay[]): (StripDay | undefined)[][] {
+/** A place in a week: one of the days given, or a day beyond them, which has no count. */
+export interface StripCell {
+  on: CalendarDay
+  day?: StripDay
+}
+
+/** Whole weeks, Monday first, around the days given. */
+export function weeksOf(days: readonly StripDay[]): StripCell[][] {
   const first = days[0]
   if (!first) return []
   const lead = weekNumber(first.on)
-  const cells: (StripDay | undefined)[] = [...Array<undefined>(lead).fill(undefined), ...days]
-  while (cells.length % 7 !== 0) cells.push(undefined)
-  return Array.from({ length: cells.length / 7 }, (_, week) => cells.slice(week * 7, week * 7 + 7))
+  const monday = addDays(first.on, -lead)
+  const weeks = Math.ceil((lead + days.length) / 7)
+  return Array.from({ length: weeks }, (_, week) =>
+    Array.from({ length: 7 }, (_, at) => {
+      const index = week * 7 + at
+      return { on: addDays(monday, index), day: days[index - lead] }
+    }),
+  )
 }
 
 /** Monday is 0. */
