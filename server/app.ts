@@ -4,10 +4,12 @@ import { speakPlainly } from '#shared/http/messages'
 import type { Deps } from './deps.ts'
 import { notFound } from './errors.ts'
 import { linkLimit, signInLimit } from './http/address-limits.ts'
+import { caughtMailPage } from './http/caught-mail-page.ts'
 import { errorHandler } from './http/error-handler.ts'
 import { securityHeaders } from './http/headers.ts'
 import { health } from './http/health.ts'
 import { jsonBodies } from './http/json.ts'
+import { oneClick } from './http/one-click.ts'
 import { originCheck } from './http/origin-check.ts'
 import { knowMember, sessionCookie } from './http/sessions.ts'
 import { staticClient } from './http/static.ts'
@@ -15,6 +17,7 @@ import { batchRoutes } from './routes/batches.ts'
 import { docsRoutes } from './routes/docs.ts'
 import { larderRoutes, tabRoutes } from './routes/larder.ts'
 import { kitRoutes } from './routes/kit.ts'
+import { noticeRoutes } from './routes/notices.ts'
 import { peopleRoutes } from './routes/people.ts'
 import { spaceRoutes } from './routes/space.ts'
 import { sessionRoutes } from './routes/session.ts'
@@ -38,6 +41,7 @@ export function createApp(deps: Deps, options: AppOptions): Express {
   app.use(securityHeaders({ https: deps.appUrl.startsWith('https:'), dev: options.dev ?? false }))
   app.use(health(deps))
   app.use(compression({ threshold: 1024 }))
+  app.use(oneClick(deps))
   app.use(
     '/api',
     originCheck(deps.appUrl),
@@ -51,6 +55,7 @@ export function createApp(deps: Deps, options: AppOptions): Express {
   app.use('/api', () => {
     throw notFound('That address')
   })
+  app.use('/dev/mail', sessionCookie(deps, options.sessionSecret), knowMember(deps), caughtMailPage(deps))
   app.use(options.client ?? staticClient())
   app.use(errorHandler(deps))
   return app
@@ -74,4 +79,5 @@ const apiRoutes = (deps: Deps): Router[] => [
   spaceRoutes(deps),
   larderRoutes(deps),
   tabRoutes(deps),
+  noticeRoutes(deps),
 ]

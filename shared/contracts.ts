@@ -1,5 +1,6 @@
 import { batchEndpoints } from './batches/contract.ts'
 import type { Endpoints } from './http/endpoint.ts'
+import { noticeEndpoints } from './notices/contract.ts'
 import { peopleEndpoints } from './people/contract.ts'
 import { spaceEndpoints } from './space/contract.ts'
 import { larderEndpoints } from './larder/contract.ts'
@@ -18,4 +19,5 @@ export const contracts: Record<string, Endpoints> = {
   space: spaceEndpoints,
   larder: larderEndpoints,
   tabs: tabEndpoints,
+  notices: noticeEndpoints,
 }

@@ -68,7 +68,8 @@ export function letterSender(
     }
   }
 
-  async function sendOne({ id, outgoing }: Claimed) {
+  async function sendOne(claimed: Claimed) {
+    const { id, outgoing } = claimed
     try {
       await mailer.send(outgoing)
     } catch (error) {
@@ -86,7 +87,7 @@ export function letterSender(
       activeMs = monotonicMs()
     }
     failures = 0
-    markSent(deps, id)
+    markSent(deps, claimed)
   }
 
   return {

@@ -2,12 +2,12 @@ import { and, inArray, lt, ne } from 'drizzle-orm'
 import { addMinutes } from '#shared/time/instant'
 import { letters, unsubscribeTokens } from '../db/schema/notices.ts'
 import type { Deps } from '../deps.ts'
+import { SWEPT_WORDS } from '../services/letters.ts'
 
 const DAY = 24 * 60
 /** What a letter said is kept for a month, that it was written for a little over a year. */
 const TEXT_DAYS = 30
 const ROW_DAYS = 400
-export const SWEPT_TEXT = 'What this letter said is kept for 30 days.'
 
 /** Forgets the words of old letters, then the letters, and links to stop letters that are as old. */
 export function sweepLetters(deps: Deps) {
@@ -15,12 +15,12 @@ export function sweepLetters(deps: Deps) {
   const done = ['sent', 'failed', 'dropped'] as const
   deps.db
     .update(letters)
-    .set({ text: SWEPT_TEXT, html: '' })
+    .set({ text: SWEPT_WORDS, html: '' })
     .where(
       and(
         inArray(letters.status, done),
         lt(letters.queuedAt, addMinutes(now, -TEXT_DAYS * DAY)),
-        ne(letters.text, SWEPT_TEXT),
+        ne(letters.text, SWEPT_WORDS),
       ),
     )
     .run()

@@ -20,6 +20,7 @@ export type Letter = typeof letters.$inferSelect
 /** A letter this worker alone may send now. */
 export interface Claimed {
   id: string
+  kind: string
   outgoing: OutgoingLetter
 }
 
@@ -65,7 +66,7 @@ function prepare(tx: Tx, deps: Deps, letter: Letter): Claimed | undefined {
   const now = deps.clock.now()
   const setAside = (status: 'dropped' | 'failed', why: string) => {
     tx.update(letters)
-      .set({ status, leasedUntil: null, lastError: why })
+      .set({ status, leasedUntil: null, lastError: why, ...forgotten(letter.kind) })
       .where(eq(letters.id, letter.id))
       .run()
     return undefined
@@ -95,6 +96,7 @@ function prepare(tx: Tx, deps: Deps, letter: Letter): Claimed | undefined {
     .run()
   return {
     id: letter.id,
+    kind,
     outgoing: {
       to,
       subject: letter.subject,
@@ -116,11 +118,25 @@ function recipient(tx: Tx, { memberId, toAddress }: Letter) {
   return member && member.status !== 'left' ? { name: member.name, address: member.address } : undefined
 }
 
-export function markSent(deps: Deps, id: string) {
+/** Letters about accounts carry links that open them: what they said is nobody's business once they have gone. */
+export const isPrivate = (kind: string) => kind.startsWith('account-')
+export const PRIVATE_WORDS = 'This letter is between the house and its reader. Its words are not kept.'
+/** What stands in place of words older than a month. */
+export const SWEPT_WORDS = 'What this letter said is kept for 30 days.'
+
+export function markSent(deps: Deps, { id, kind }: Pick<Claimed, 'id' | 'kind'>) {
   const sentAt = deps.clock.now()
   deps.db
     .update(letters)
-    .set({ status: 'sent', sentAt, leasedUntil: null, failure: null, lastError: null, tries: nextTry })
+    .set({
+      status: 'sent',
+      sentAt,
+      leasedUntil: null,
+      failure: null,
+      lastError: null,
+      tries: nextTry,
+      ...forgotten(kind),
+    })
     .where(eq(letters.id, id))
     .run()
 }
@@ -137,13 +153,15 @@ export function markRefused(deps: Deps, id: string, error: SendError) {
         failure: error.failure,
         lastError: error.message.slice(0, 500),
         ...(error.permanent
-          ? { status: 'failed' as const }
+          ? { status: 'failed' as const, ...forgotten(letter.kind) }
           : { sendAfter: addMinutes(deps.clock.now(), retryMinutes(tries)) }),
       })
       .where(eq(letters.id, id))
       .run()
   })
 }
+
+const forgotten = (kind: string) => (isPrivate(kind) ? { text: PRIVATE_WORDS, html: '' } : {})
 
 const nextTry = sql`${letters.tries} + 1`
 

@@ -1,4 +1,5 @@
 import { batchEndpoints } from '#shared/batches/contract'
+import { noticeEndpoints } from '#shared/notices/contract'
 import { peopleEndpoints } from '#shared/people/contract'
 import { spaceEndpoints } from '#shared/space/contract'
 import { larderEndpoints } from '#shared/larder/contract'
@@ -18,4 +19,5 @@ export const api = {
   yeast: createClient(yeastEndpoints),
   larder: createClient(larderEndpoints),
   tabs: createClient(tabEndpoints),
+  notices: createClient(noticeEndpoints),
 }
