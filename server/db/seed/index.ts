@@ -3,6 +3,7 @@ import { space } from '../schema/space.ts'
 import { write, type Tx } from '../open.ts'
 import type { Deps } from '../../deps.ts'
 import { hashPassword } from '../../services/passwords.ts'
+import { seedKit } from './kit.ts'
 import { DEMO_PASSWORD, seedPeople } from './people.ts'
 import { seedLarder } from './larder.ts'
 import { seedYeast } from './yeast.ts'
@@ -13,6 +14,10 @@ export interface SeedContext {
   tx: Tx
   /** Member ids by login: `member`, `member2`, `steward`, `admin` … */
   people: Record<string, string>
+  /** Kind ids by short name: `demijohn`, `siphon` … */
+  kinds: Record<string, string>
+  /** Item ids by tag: `DJ-07`. */
+  items: Record<string, string>
 }
 
 /** Fills an empty database with the demo space, in one transaction; leaves any other database alone. */
@@ -22,10 +27,11 @@ export async function seedDemo(deps: Deps) {
   write(deps.db, (tx) => {
     tx.update(space).set({ name: 'Copperwell Cellar', demo: true, roomM3: 64, airChangesPerHour: 0.7 }).run()
     const people = seedPeople(deps, tx, passwordHash)
-    const context: SeedContext = { deps, tx, people }
+    const context: SeedContext = { deps, tx, people, kinds: {}, items: {} }
     for (const part of PARTS) part(context)
   })
 }
 
 /** One per domain, in the order they build on each other. */
 const PARTS: ((context: SeedContext) => void)[] = [seedYeast, seedLarder]
+const PARTS: ((context: SeedContext) => void)[] = [seedKit, seedYeast]
