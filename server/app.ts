@@ -18,6 +18,7 @@ import { docsRoutes } from './routes/docs.ts'
 import { larderRoutes, tabRoutes } from './routes/larder.ts'
 import { kitRoutes } from './routes/kit.ts'
 import { noticeRoutes } from './routes/notices.ts'
+import { loanRoutes } from './routes/loans.ts'
 import { peopleRoutes } from './routes/people.ts'
 import { spaceRoutes } from './routes/space.ts'
 import { sessionRoutes } from './routes/session.ts'
@@ -74,6 +75,7 @@ const apiRoutes = (deps: Deps): Router[] => [
   sessionRoutes(deps),
   peopleRoutes(deps),
   kitRoutes(deps),
+  loanRoutes(deps),
   batchRoutes(deps),
   yeastRoutes(deps),
   spaceRoutes(deps),

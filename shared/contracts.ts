@@ -1,6 +1,10 @@
 import { batchEndpoints } from './batches/contract.ts'
 import type { Endpoints } from './http/endpoint.ts'
 import { noticeEndpoints } from './notices/contract.ts'
+import { calendarEndpoints } from './loans/calendar-contract.ts'
+import { loanEndpoints } from './loans/contract.ts'
+import { deskEndpoints } from './loans/desk-contract.ts'
+import { waitingEndpoints } from './loans/waiting-contract.ts'
 import { peopleEndpoints } from './people/contract.ts'
 import { spaceEndpoints } from './space/contract.ts'
 import { larderEndpoints } from './larder/contract.ts'
@@ -14,6 +18,10 @@ export const contracts: Record<string, Endpoints> = {
   session: sessionEndpoints,
   people: peopleEndpoints,
   kit: kitEndpoints,
+  loans: loanEndpoints,
+  waiting: waitingEndpoints,
+  desk: deskEndpoints,
+  calendar: calendarEndpoints,
   batches: batchEndpoints,
   yeast: yeastEndpoints,
   space: spaceEndpoints,

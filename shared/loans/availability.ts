@@ -1,6 +1,6 @@
 import { type CalendarDay, addDays, dayFromNumber, dayNumber, laterDay } from '../time/day.ts'
 import { type DayRange, lengthDays } from '../time/day-range.ts'
-import type { LiveLoanStatus } from './vocabulary.ts'
+import type { HoldingLoanStatus } from './vocabulary.ts'
 
 /** A place that is taken, from the collection day to the last day of turnaround, both included. */
 export interface Hold {
@@ -18,10 +18,10 @@ export interface DayFree {
 /**
  * The last day a live loan blocks: its return-by day and the turnaround after it. What is out and late may come back
  * today at the earliest, so it blocks until today and the turnaround. Out until the 5th with 2 days of turnaround blocks
- * until the 7th; still out on the 9th, until the 11th.
+ * until the 7th; still out on the 9th, until the 11th. For what came back, `to` is the day it did.
  */
 export function blocksUntil(
-  loan: { status: LiveLoanStatus; to: CalendarDay },
+  loan: { status: HoldingLoanStatus; to: CalendarDay },
   turnaroundDays: number,
   today: CalendarDay,
 ): CalendarDay {

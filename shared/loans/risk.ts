@@ -1,13 +1,14 @@
 import type { CalendarDay } from '../time/day.ts'
 import { type Booking, leftWithout } from './assignment.ts'
 import { blocksUntil } from './availability.ts'
-import type { LiveLoanStatus, RiskReason } from './vocabulary.ts'
+import type { HoldingLoanStatus, RiskReason } from './vocabulary.ts'
 
-/** A live loan, as the shelf sees it. `blocksUntil` is what it really blocks today, late or not. */
+/** A loan that takes a place on the shelf. */
 export interface LiveLoan {
   id: string
-  status: LiveLoanStatus
+  status: HoldingLoanStatus
   from: CalendarDay
+  /** The return-by day; for what came back and is not clean yet, the day it came back. */
   to: CalendarDay
   turnaroundDays: number
 }
@@ -46,6 +47,6 @@ function toBookings(loans: readonly LiveLoan[], today: CalendarDay | undefined):
     id: loan.id,
     from: loan.from,
     blocksUntil: blocksUntil(loan, loan.turnaroundDays, today ?? loan.to),
-    pinned: loan.status === 'out',
+    pinned: loan.status === 'out' || loan.status === 'returned',
   }))
 }

@@ -13,6 +13,9 @@ export type LoanStatus = (typeof LOAN_STATUSES)[number]
 export const LIVE_LOAN_STATUSES = ['requested', 'approved', 'out'] as const satisfies LoanStatus[]
 export type LiveLoanStatus = (typeof LIVE_LOAN_STATUSES)[number]
 
+/** What takes a place on the shelf: the live ones, and what came back and is not clean yet. */
+export type HoldingLoanStatus = LiveLoanStatus | 'returned'
+
 export const LOAN_ACTIONS = [
   'approve',
   'decline',

@@ -68,7 +68,22 @@ function offsetMs(ms: number, zone: string): number {
   return wallClock(ms, zone).ms - Math.floor(ms / 1000) * 1000
 }
 
-function wallClock(ms: number, zone: string): { on: CalendarDay; ms: number } {
+interface WallClock {
+  on: CalendarDay
+  ms: number
+}
+
+let lastRead: { zone: string; second: number; shown: WallClock } | undefined
+
+/** What clocks in a zone show. The last reading is kept: within a second the same is asked many times. */
+function wallClock(ms: number, zone: string): WallClock {
+  const second = Math.floor(ms / 1000)
+  if (lastRead?.zone !== zone || lastRead.second !== second)
+    lastRead = { zone, second, shown: readWallClock(second * 1000, zone) }
+  return lastRead.shown
+}
+
+function readWallClock(ms: number, zone: string): WallClock {
   const parts = new Map(
     clockFace(zone)
       .formatToParts(ms)

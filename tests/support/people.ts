@@ -54,6 +54,12 @@ export function openSession(app: TestApp, memberId: string, role: Role): string 
   return `sid=${encodeURIComponent(`s:${sid}.${signature}`)}`
 }
 
+/** Signs a person in again, where time has passed and their session with it. */
+export function comeBack(app: TestApp, who: Person, role: Role = 'member') {
+  who.cookie = openSession(app, who.id, role)
+  void who.agent.set('Cookie', who.cookie)
+}
+
 /** The usual cast: two members, a steward, an admin. */
 export const people = (app: TestApp) => ({
   ada: person(app, 'Ada Marsh'),

@@ -37,7 +37,8 @@ CREATE TABLE loans (
   created_at TEXT NOT NULL,
   updated_at TEXT NOT NULL,
   version INTEGER NOT NULL DEFAULT 1 CHECK (version >= 1),
-  CHECK (to_on >= from_on),
+  -- Two years at most: whoever asks for the loans around a day need look back no further.
+  CHECK (to_on >= from_on AND to_on <= date(from_on, '+730 days')),
   CHECK (extension_to IS NULL OR (extension_to > to_on AND status IN ('approved', 'out'))),
   CHECK ((at_risk = 1) = (at_risk_reason IS NOT NULL)),
   CHECK (status NOT IN ('out', 'returned') OR (item_id IS NOT NULL AND out_at IS NOT NULL)),
@@ -68,13 +69,16 @@ CREATE INDEX loans_due ON loans (to_on, kind_id, wild, turnaround_days, blocks_u
 --> statement-breakpoint
 CREATE INDEX loans_item ON loans (item_id, from_on);
 --> statement-breakpoint
-CREATE INDEX loans_member ON loans (member_id, from_on, id);
+CREATE INDEX loans_member ON loans (member_id, from_on, id, to_on);
 --> statement-breakpoint
-CREATE INDEX loans_kind ON loans (kind_id, from_on, id);
+CREATE INDEX loans_kind ON loans (kind_id, from_on, id, to_on);
 --> statement-breakpoint
 CREATE INDEX loans_status ON loans (status, from_on, id);
 --> statement-breakpoint
-CREATE INDEX loans_from ON loans (from_on, id);
+CREATE INDEX loans_from ON loans (from_on, id, to_on);
+--> statement-breakpoint
+-- The few that are longer than two months; the rest of a month's loans started no more than 62 days before it.
+CREATE INDEX loans_long ON loans (from_on, to_on) WHERE julianday(to_on) - julianday(from_on) > 62;
 --> statement-breakpoint
 CREATE INDEX loans_batch ON loans (batch_id) WHERE batch_id IS NOT NULL;
 --> statement-breakpoint
@@ -184,6 +188,13 @@ BEGIN
   WHERE EXISTS (SELECT 1 FROM loans WHERE item_id = NEW.item_id AND status = 'out' AND id NOT IN (OLD.id, NEW.id));
   SELECT RAISE(ABORT, 'WRONG_ITEM')
   WHERE NOT EXISTS (SELECT 1 FROM items WHERE id = NEW.item_id AND kind_id = NEW.kind_id AND wild = NEW.wild);
+END;
+--> statement-breakpoint
+-- Clean again, off the shelf or kept for wild cultures now: it no longer dries in the place of a loan.
+CREATE TRIGGER loans_item_ready AFTER UPDATE OF hygiene, status, wild ON items
+WHEN NEW.hygiene <> 'dirty' OR NEW.status <> 'in-service' OR NEW.wild <> OLD.wild
+BEGIN
+  UPDATE loans SET blocking = 0 WHERE item_id = NEW.id AND status = 'returned' AND blocking = 1;
 END;
 --> statement-breakpoint
 CREATE TABLE loan_events (

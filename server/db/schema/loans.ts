@@ -72,10 +72,10 @@ export const loans = sqliteTable(
     index('loans_shelf').on(t.blocksUntilOn, t.fromOn, t.kindId, t.wild, t.blocking),
     uniqueIndex('loans_item_out').on(t.itemId),
     index('loans_item').on(t.itemId, t.fromOn),
-    index('loans_member').on(t.memberId, t.fromOn, t.id),
-    index('loans_kind').on(t.kindId, t.fromOn, t.id),
+    index('loans_member').on(t.memberId, t.fromOn, t.id, t.toOn),
+    index('loans_kind').on(t.kindId, t.fromOn, t.id, t.toOn),
     index('loans_status').on(t.status, t.fromOn, t.id),
-    index('loans_from').on(t.fromOn, t.id),
+    index('loans_from').on(t.fromOn, t.id, t.toOn),
   ],
 )
 
