@@ -33,5 +33,4 @@ export async function seedDemo(deps: Deps) {
 }
 
 /** One per domain, in the order they build on each other. */
-const PARTS: ((context: SeedContext) => void)[] = [seedYeast, seedLarder]
-const PARTS: ((context: SeedContext) => void)[] = [seedKit, seedYeast]
+const PARTS: ((context: SeedContext) => void)[] = [seedKit, seedYeast, seedLarder]
