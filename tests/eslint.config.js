@@ -57,7 +57,7 @@ export default defineConfig(
   { files: ['server/cli/**', 'tests/bench/**'], rules: { 'no-console': 'off' } },
   {
     // Typed lint sees .vue imports in .ts files as `any`.
-    files: ['src/main.ts', 'src/App.vue', 'src/router/*.ts', 'tests/components/**', 'tests/support/**'],
+    files: ['src/main.ts', 'src/App.vue', 'src/views/**/*.vue', 'src/router/*.ts', 'tests/components/**', 'tests/support/**'],
     rules: {
       '@typescript-eslint/no-unsafe-argument': 'off',
       '@typescript-eslint/no-unsafe-assignment': 'off',

@@ -32,13 +32,11 @@ interface Options {
   idempotencyKey?: string
 }
 
-type NothingNeeded<E> = keyof Sent<E> extends never
-  ? true
-  : Record<never, never> extends Sent<E>
-    ? true
-    : false
+/** What a call takes: the contract's parts, and the file where there is one to send. */
+type Given<E> = Sent<E> & (E extends { upload: string } ? { file: Blob } : unknown)
+type NothingNeeded<E> = Record<never, never> extends Given<E> ? true : false
 type Args<E> =
-  NothingNeeded<E> extends true ? [input?: Sent<E>, options?: Options] : [input: Sent<E>, options?: Options]
+  NothingNeeded<E> extends true ? [input?: Given<E>, options?: Options] : [input: Given<E>, options?: Options]
 
 type Answered<E> = E extends { file: string } ? Blob : Reply<E>
 export type Client<C extends Endpoints> = { [K in keyof C]: (...args: Args<C[K]>) => Promise<Answered<C[K]>> }

@@ -1,5 +1,9 @@
 import { batchEndpoints } from '#shared/batches/contract'
 import { noticeEndpoints } from '#shared/notices/contract'
+import { calendarEndpoints } from '#shared/loans/calendar-contract'
+import { loanEndpoints } from '#shared/loans/contract'
+import { deskEndpoints } from '#shared/loans/desk-contract'
+import { waitingEndpoints } from '#shared/loans/waiting-contract'
 import { peopleEndpoints } from '#shared/people/contract'
 import { spaceEndpoints } from '#shared/space/contract'
 import { larderEndpoints } from '#shared/larder/contract'
@@ -15,6 +19,8 @@ export const api = {
   people: createClient(peopleEndpoints),
   space: createClient(spaceEndpoints),
   kit: createClient(kitEndpoints),
+  loans: createClient({ ...loanEndpoints, ...deskEndpoints, ...calendarEndpoints }),
+  waiting: createClient(waitingEndpoints),
   batches: createClient(batchEndpoints),
   yeast: createClient(yeastEndpoints),
   larder: createClient(larderEndpoints),

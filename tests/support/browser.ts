@@ -7,6 +7,7 @@ import { members } from '#server/db/schema/people'
 import { seedDemo } from '#server/db/seed/index'
 import { findChromium } from './chromium.mjs'
 import { openSession } from './people.ts'
+import { testClock } from './clock.ts'
 import { testApp, type TestApp } from './test-app.ts'
 
 const FLAGS = [
@@ -38,7 +39,8 @@ export interface House extends TestApp {
 
 /** The built application with the demo space in it, on a port of its own, and a real browser. */
 export async function openHouse(): Promise<House> {
-  const app = testApp({ demo: true })
+  // The browser counts days by its own clock, so the house stands at the real moment.
+  const app = testApp({ demo: true, clock: testClock(new Date().toISOString()) })
   await seedDemo(app.deps)
   const server = createServer(app.app)
   await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve))

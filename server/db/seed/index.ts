@@ -4,6 +4,7 @@ import { write, type Tx } from '../open.ts'
 import type { Deps } from '../../deps.ts'
 import { hashPassword } from '../../services/passwords.ts'
 import { seedKit } from './kit.ts'
+import { seedLoans } from './loans.ts'
 import { DEMO_PASSWORD, seedPeople } from './people.ts'
 import { seedLarder } from './larder.ts'
 import { seedYeast } from './yeast.ts'
@@ -33,4 +34,4 @@ export async function seedDemo(deps: Deps) {
 }
 
 /** One per domain, in the order they build on each other. */
-const PARTS: ((context: SeedContext) => void)[] = [seedKit, seedYeast, seedLarder]
+const PARTS: ((context: SeedContext) => void)[] = [seedKit, seedLoans, seedYeast, seedLarder]
