@@ -30,7 +30,8 @@ export function securityHeaders({ https, dev }: { https: boolean; dev: boolean }
               (_req, res) => `'nonce-${(res as { locals?: { nonce?: string } }).locals?.nonce}'`,
             ],
             imgSrc: ["'self'", 'data:', 'blob:'],
-            fontSrc: ["'self'"],
+            // FullCalendar brings its arrows as a font in a data: address.
+            fontSrc: ["'self'", 'data:'],
             connectSrc: ["'self'"],
             manifestSrc: ["'self'"],
             workerSrc: ["'self'"],

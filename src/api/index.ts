@@ -9,13 +9,13 @@ import { spaceEndpoints } from '#shared/space/contract'
 import { larderEndpoints } from '#shared/larder/contract'
 import { tabEndpoints } from '#shared/larder/tab-contract'
 import { kitEndpoints } from '#shared/kit/contract'
-import { sessionEndpoints } from '#shared/session/contract'
 import { yeastEndpoints } from '#shared/yeast/contract'
 import { createClient } from './client.ts'
+import { sessionApi } from './session.ts'
 
 /** Every call the client can make, by domain. */
 export const api = {
-  session: createClient(sessionEndpoints),
+  session: sessionApi,
   people: createClient(peopleEndpoints),
   space: createClient(spaceEndpoints),
   kit: createClient(kitEndpoints),

@@ -2,7 +2,7 @@ import { computed, shallowRef } from 'vue'
 import { defineStore } from 'pinia'
 import { roleCovers, type Role } from '#shared/people/vocabulary'
 import type { Session, SpaceBrief } from '#shared/session/contract'
-import { api } from '@/api'
+import { sessionApi } from '@/api/session'
 import { ApiError } from '@/api/client'
 
 /** Who is signed in, and in which space. */
@@ -31,23 +31,23 @@ export const useSessionStore = defineStore('session', () => {
 
   async function read() {
     try {
-      accept(await api.session.current())
+      accept(await sessionApi.current())
     } catch (error) {
       if (!(error instanceof ApiError) || error.code !== 'signed-out') {
         loading = undefined
         throw error
       }
-      space.value = await api.session.space()
+      space.value = await sessionApi.space()
     }
   }
 
   async function signIn(email: string, password: string) {
-    accept(await api.session.signIn({ body: { email, password } }))
+    accept(await sessionApi.signIn({ body: { email, password } }))
     loading = Promise.resolve()
   }
 
   async function signOut() {
-    await api.session.signOut()
+    await sessionApi.signOut()
     forget()
   }
 
