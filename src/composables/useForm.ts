@@ -43,7 +43,7 @@ export function useForm<S extends z.ZodType, V extends object>(schema: S, initia
     if (busy.value) return false
     const checked = schema.safeParse(cleaned(values))
     if (!checked.success) {
-      fail(checked.error.issues.map((issue) => ({ path: issue.path.join('.'), message: issue.message })))
+      fail(wordIssues(checked.error.issues, schema.safeParse(values).error?.issues ?? []))
       return false
     }
     busy.value = true
@@ -79,6 +79,14 @@ export function useForm<S extends z.ZodType, V extends object>(schema: S, initia
       errors.value = []
     },
   }
+}
+
+/** What the rule says of an empty text ("Write your e-mail address.") beats what it says of something missing. */
+function wordIssues(missing: z.core.$ZodIssue[], empty: z.core.$ZodIssue[]) {
+  return missing.map(({ path, message }) => {
+    const at = path.join('.')
+    return { path: at, message: empty.find((issue) => issue.path.join('.') === at)?.message ?? message }
+  })
 }
 
 /** An untouched optional field is an empty text on screen and absent in the request. */

@@ -129,6 +129,28 @@ describe('useForm', () => {
     expect(errors.value).toEqual([])
   })
 
+  it('says of an empty text what the rule says of it, and leaves an empty optional out', async () => {
+    const strict = z.object({
+      email: z.string().trim().min(1, 'Write your e-mail address.'),
+      note: z.string().min(1).optional(),
+    })
+    let made!: ReturnType<typeof useForm<typeof strict, { email: string; note: string }>>
+    mount({
+      setup() {
+        made = useForm(strict, { email: '', note: '' })
+        return () => h('form')
+      },
+    })
+    await made.submit(() => Promise.resolve())
+    expect(made.errors.value.map(({ path, message }) => [path, message])).toEqual([
+      ['email', 'Write your e-mail address.'],
+    ])
+    made.values.email = 'wren'
+    let body: unknown
+    await made.submit((sent) => Promise.resolve((body = sent)))
+    expect(body).toEqual({ email: 'wren' })
+  })
+
   it('sends once, however often it is pressed', async () => {
     const { submit, values } = form()
     values.name = 'Hedgerow'
@@ -144,12 +166,13 @@ describe('useForm', () => {
 })
 
 describe('the summary of errors', () => {
-  it('takes focus after each failed try and leads to the field', async () => {
-    document.body.innerHTML = '<input id="f-name">'
+  it('takes focus after each failed try, names the field and leads to it', async () => {
+    document.body.innerHTML = '<label for="f-name">Name of the batch</label><input id="f-name">'
     const wrapper = mount(ErrorSummary, { attachTo: document.body, props: { errors: [], tries: 0 } })
     await wrapper.setProps({ errors: [{ path: 'name', message: 'Give it a name.', id: 'f-name' }], tries: 1 })
     await flushPromises()
     expect(document.activeElement).toBe(wrapper.get('[role="alert"]').element)
+    expect(wrapper.get('a').text()).toBe('Name of the batch: Give it a name.')
     await wrapper.get('a').trigger('click')
     expect(document.activeElement?.id).toBe('f-name')
   })
