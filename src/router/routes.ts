@@ -24,6 +24,8 @@ export const PATHS = {
   yeast: '/yeast',
   'packet-new': '/yeast/new',
   packet: '/yeast/:packetId',
+  'packet-change': '/yeast/:packetId/change',
+  'pitch-outcome': '/pitches/:pitchId/outcome',
   larder: '/larder',
   bench: '/bench',
   stocktake: '/stocktake',
@@ -122,6 +124,20 @@ export const routes: RouteRecordRaw[] = [
   page('me', () => import('@/views/people/MeView.vue'), { title: 'Me' }),
   page('members', () => import('@/views/people/MembersView.vue'), { title: 'Members', access: 'steward' }),
   page('space', () => import('@/views/space/SpaceView.vue'), { title: 'Space', access: 'admin' }),
+  page('yeast', () => import('@/views/yeast/YeastFridgeView.vue'), { title: 'Yeast' }),
+  page('packet-new', () => import('@/views/yeast/YeastPacketFormView.vue'), {
+    title: 'Put a packet in',
+    place: 'yeast',
+  }),
+  page('packet', () => import('@/views/yeast/YeastPacketView.vue'), { title: 'A packet', place: 'yeast' }),
+  page('packet-change', () => import('@/views/yeast/YeastPacketFormView.vue'), {
+    title: 'Change a packet',
+    place: 'yeast',
+  }),
+  page('pitch-outcome', () => import('@/views/yeast/YeastOutcomeView.vue'), {
+    title: 'How did it start?',
+    place: 'yeast',
+  }),
   page('more', () => import('@/views/session/MoreView.vue'), { title: 'More' }),
   page('not-found', () => import('@/views/session/NotFoundView.vue'), {
     title: 'Not here',

@@ -41,13 +41,22 @@ export const emptyDraft = (today: string): PacketDraft => ({
 })
 
 /** A fresh packet of a strain that was here before: all but lot and dates. */
-export const draftLike = (draft: PacketDraft, { strain, form, use, initial, storage, shared }: Strain): PacketDraft => ({
+export const draftLike = (
+  draft: PacketDraft,
+  { strain, form, use, initial, storage, shared }: Strain,
+): PacketDraft => ({
   ...draft,
   ...{ strain, form, use, initial, storage, shared },
 })
 
 export const draftOf = (packet: Packet, today: string): PacketDraft => ({
-  ...{ strain: packet.strain, form: packet.form, use: packet.use, storage: packet.storage, shared: packet.shared },
+  ...{
+    strain: packet.strain,
+    form: packet.form,
+    use: packet.use,
+    storage: packet.storage,
+    shared: packet.shared,
+  },
   lotCode: packet.lotCode ?? '',
   madeOn: packet.madeOn ?? '',
   bestBefore: packet.bestBefore ?? '',
@@ -74,7 +83,11 @@ export function requestOf(draft: PacketDraft, unit: 'g' | 'ml'): Record<string, 
 }
 
 /** Only what was changed; what was emptied is cleared. */
-export function patchOf(draft: PacketDraft, packet: Packet, today: string): Record<keyof PacketPatch, unknown> {
+export function patchOf(
+  draft: PacketDraft,
+  packet: Packet,
+  today: string,
+): Record<keyof PacketPatch, unknown> {
   const before = draftOf(packet, today)
   const changed = (key: keyof PacketDraft) => draft[key] !== before[key]
   const patch: Record<string, unknown> = {}
@@ -84,5 +97,5 @@ export function patchOf(draft: PacketDraft, packet: Packet, today: string): Reco
   if (changed('storage')) Object.assign(patch, { storage: draft.storage, movedOn: draft.movedOn })
   if (changed('remaining'))
     patch[packet.initialGrams === null ? 'remainingMl' : 'remainingGrams'] = draft.remaining
-  return patch as Record<keyof PacketPatch, unknown>
+  return patch
 }
