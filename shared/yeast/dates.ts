@@ -18,6 +18,7 @@ export function dateState(
 }
 
 interface DatedPacket {
+  form: YeastForm
   madeOn: CalendarDay | null
   bestBefore: CalendarDay | null
   openedOn: CalendarDay | null
@@ -25,10 +26,16 @@ interface DatedPacket {
 
 /** What is wrong with a packet's days, one message a field; nothing when they agree. */
 export function dateFaults(packet: DatedPacket, today: CalendarDay): { path: string; message: string }[] {
-  const { madeOn, bestBefore, openedOn } = packet
+  const { form, madeOn, bestBefore, openedOn } = packet
   const faults: { path: string; message: string }[] = []
   const add = (path: string, message: string) => void faults.push({ path, message })
-  if (!madeOn && !bestBefore) add('bestBefore', 'Give the best-before day, or the day it was made.')
+  if (!madeOn && !bestBefore)
+    add(
+      form === 'slurry' ? 'madeOn' : 'bestBefore',
+      form === 'slurry'
+        ? 'Give the day it was harvested.'
+        : 'Give the best-before day, or the day it was made.',
+    )
   if (madeOn && madeOn > today) add('madeOn', 'It cannot have been made after today.')
   if (madeOn && bestBefore && bestBefore < madeOn)
     add('bestBefore', 'The best-before day is before the day it was made.')

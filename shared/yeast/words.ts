@@ -23,9 +23,9 @@ export const capital = (text: string) => text.charAt(0).toUpperCase() + text.sli
 
 const counted = (count: number, word: string) => `${numberWord(count)} ${word}${count === 1 ? '' : 's'}`
 
-/** A stretch of days as one speaks of it: `nine days`, `six weeks`, `five months`, `two years`. */
+/** A stretch of days as one speaks of it: `nine days`, `17 days`, `six weeks`, `five months`, `two years`. */
 export function spanWords(days: number): string {
-  if (days < 14) return counted(days, 'day')
+  if (days < 32) return counted(days, 'day')
   if (days < 60) return counted(Math.round(days / 7), 'week')
   if (days < 700) return counted(Math.round(days / 30.44), 'month')
   return counted(Math.round(days / 365.25), 'year')

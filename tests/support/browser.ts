@@ -72,6 +72,8 @@ export async function openHouse(): Promise<House> {
       if (!request.url().startsWith(url) && !/^(data|blob):/.test(request.url()))
         heard.push(`asked ${request.url()}`)
     })
+    // The browser and the house agree on what day it is.
+    await page.clock.setFixedTime(new Date(app.clock.now()))
     await page.goto(url + path)
     return page
   }
