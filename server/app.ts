@@ -19,6 +19,7 @@ import { larderRoutes, tabRoutes } from './routes/larder.ts'
 import { kitRoutes } from './routes/kit.ts'
 import { noticeRoutes } from './routes/notices.ts'
 import { loanRoutes } from './routes/loans.ts'
+import { feedFileRoutes, feedRoutes } from './routes/feed.ts'
 import { peopleRoutes } from './routes/people.ts'
 import { spaceRoutes } from './routes/space.ts'
 import { sessionRoutes } from './routes/session.ts'
@@ -56,6 +57,7 @@ export function createApp(deps: Deps, options: AppOptions): Express {
   app.use('/api', () => {
     throw notFound('That address')
   })
+  app.use(feedFileRoutes(deps))
   app.use('/dev/mail', sessionCookie(deps, options.sessionSecret), knowMember(deps), caughtMailPage(deps))
   app.use(options.client ?? staticClient())
   app.use(errorHandler(deps))
@@ -76,6 +78,7 @@ const apiRoutes = (deps: Deps): Router[] => [
   peopleRoutes(deps),
   kitRoutes(deps),
   loanRoutes(deps),
+  feedRoutes(deps),
   batchRoutes(deps),
   yeastRoutes(deps),
   spaceRoutes(deps),

@@ -2,6 +2,7 @@ import { batchEndpoints } from './batches/contract.ts'
 import type { Endpoints } from './http/endpoint.ts'
 import { noticeEndpoints } from './notices/contract.ts'
 import { calendarEndpoints } from './loans/calendar-contract.ts'
+import { feedEndpoints } from './loans/feed-contract.ts'
 import { loanEndpoints } from './loans/contract.ts'
 import { deskEndpoints } from './loans/desk-contract.ts'
 import { waitingEndpoints } from './loans/waiting-contract.ts'
@@ -22,6 +23,7 @@ export const contracts: Record<string, Endpoints> = {
   waiting: waitingEndpoints,
   desk: deskEndpoints,
   calendar: calendarEndpoints,
+  feed: feedEndpoints,
   batches: batchEndpoints,
   yeast: yeastEndpoints,
   space: spaceEndpoints,

@@ -9,6 +9,7 @@ import { AppError, notFound } from '../errors.ts'
 import { decodeCursor, pageFrom } from '../http/cursor.ts'
 import type { SignedIn } from '../http/sessions.ts'
 import { newId } from '../ids.ts'
+import { hasFeed } from './feed.ts'
 import { pendingEmail } from './pending-email.ts'
 
 interface NewMember {
@@ -46,7 +47,7 @@ export function meOf(deps: Deps, id: string): Me {
     memberSince: row.createdAt,
     pendingEmail: pendingEmail(deps, id),
     secondFactor: false,
-    calendarFeed: false,
+    calendarFeed: hasFeed(deps, id),
     erasedOn: row.eraseOn,
   }
 }

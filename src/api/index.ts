@@ -1,6 +1,7 @@
 import { batchEndpoints } from '#shared/batches/contract'
 import { noticeEndpoints } from '#shared/notices/contract'
 import { calendarEndpoints } from '#shared/loans/calendar-contract'
+import { feedEndpoints } from '#shared/loans/feed-contract'
 import { loanEndpoints } from '#shared/loans/contract'
 import { deskEndpoints } from '#shared/loans/desk-contract'
 import { waitingEndpoints } from '#shared/loans/waiting-contract'
@@ -19,7 +20,7 @@ export const api = {
   people: createClient(peopleEndpoints),
   space: createClient(spaceEndpoints),
   kit: createClient(kitEndpoints),
-  loans: createClient({ ...loanEndpoints, ...deskEndpoints, ...calendarEndpoints }),
+  loans: createClient({ ...loanEndpoints, ...feedEndpoints, ...deskEndpoints, ...calendarEndpoints }),
   waiting: createClient(waitingEndpoints),
   batches: createClient(batchEndpoints),
   yeast: createClient(yeastEndpoints),
