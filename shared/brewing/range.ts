@@ -4,6 +4,8 @@ export class OutOfRange extends RangeError {
   readonly value: unknown
   readonly low: number | undefined
   readonly high: number | undefined
+  /** What is needed, where a range does not say it all. */
+  readonly note: string | undefined
 
   constructor(argument: string, value: unknown, low?: number, high?: number, note?: string) {
     super(`${argument} is ${show(value)}: ${note ?? allowed(low, high)}`)
@@ -12,6 +14,7 @@ export class OutOfRange extends RangeError {
     this.value = value
     this.low = low
     this.high = high
+    this.note = note
   }
 }
 

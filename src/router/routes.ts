@@ -139,6 +139,7 @@ export const routes: RouteRecordRaw[] = [
     place: 'yeast',
   }),
   page('more', () => import('@/views/session/MoreView.vue'), { title: 'More' }),
+  page('bench', () => import('@/views/brewing/BenchView.vue'), { title: 'Bench' }),
   page('not-found', () => import('@/views/session/NotFoundView.vue'), {
     title: 'Not here',
     access: 'anyone',
