@@ -25,16 +25,16 @@ export interface Outcome {
 }
 
 export function showIn(units: Units): Show {
+  const degrees = (celsius: number) => formatFigure(fromCelsius(celsius, units.temperature), 0)
   return {
     gravity: (sg) =>
       units.gravity === 'sg' ? formatFigure(sg, 3) : `${formatFigure(fromGravity(clampSg(sg), 'bx'), 1)} °Bx`,
-    points: (sg) => `${formatFigure(sg * 1000, 0)} points`,
     volume: (litres) =>
       units.volume === 'L'
         ? `${formatFigure(litres, 2)} L`
         : `${formatFigure(fromLitres(litres, 'gal'), 2)} gal`,
-    temperature: (celsius) =>
-      `${formatFigure(fromCelsius(celsius, units.temperature), 0)} °${units.temperature}`,
+    temperature: (celsius) => `${degrees(celsius)} °${units.temperature}`,
+    temperatures: (low, high) => `${degrees(low)}–${degrees(high)} °${units.temperature}`,
   }
 }
 
@@ -135,11 +135,14 @@ function givenBy(typed: Typed, today: string): Given {
   }
 }
 
+/** Whether a field is shown: some depend on another. */
+export const isAsked = ({ unless }: Ask, typed: Typed): boolean => !unless || typed[unless.key] !== unless.is
+
 /** Answers a question from what was typed, or says beside which field it cannot. */
 export function answerTo(question: Question, typed: Typed, units: Units, today: string): Outcome {
   const errors: Record<string, string> = {}
   const missing: string[] = []
-  for (const ask of question.asks) {
+  for (const ask of question.asks.filter((one) => isAsked(one, typed))) {
     const value = typed[ask.key]
     if (badNumber(value)) errors[ask.key] = 'That is no number. Use digits, with a comma or a point.'
     else if (!ask.optional && wantsMore(ask, value)) missing.push(ask.label)

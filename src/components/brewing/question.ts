@@ -34,6 +34,8 @@ interface Common {
   optional?: boolean
   /** Further argument names whose errors belong beside this field. */
   guards?: readonly string[]
+  /** Asked only where another field holds something else than this. */
+  unless?: { key: string; is: string }
 }
 
 export interface NumberAsk extends Common {
@@ -97,9 +99,9 @@ export interface Given {
 /** Writes quantities in the units chosen, to no more places than they are worth. */
 export interface Show {
   gravity: (sg: number) => string
-  points: (sg: number) => string
   volume: (litres: number) => string
   temperature: (celsius: number) => string
+  temperatures: (lowC: number, highC: number) => string
 }
 
 export interface Answer {

@@ -58,6 +58,16 @@ const GOGGLES = {
   why: 'A burst bottle throws glass. Keep them in a box with a lid, and chill one before you open it.',
 }
 
+/** What is said when none of these blocks stands. */
+const PASSES = [
+  {
+    codes: ['too-few-readings', 'not-long-enough', 'still-falling', 'readings-disagree', 'cold-rest'],
+    fact: 'No more than a point of change over a week.',
+  },
+  { codes: ['above-expected', 'below-floor', 'too-few-readings'], fact: 'It stands where it should end.' },
+  { codes: ['pressure'], fact: 'The bottle bears the worst case.' },
+] as const
+
 const gate: Question = {
   id: 'gate',
   moment: 'bottling',
@@ -84,6 +94,7 @@ const gate: Question = {
       unit: 'g/L',
       start: 6,
       guards: ['primer.gramsPerLitre'],
+      unless: { key: 'primer', is: 'none' },
     },
     { ...WARMEST, key: 'warmestC' },
     { kind: 'day', key: 'on', label: 'On', start: 'today' },
@@ -111,10 +122,10 @@ const gate: Question = {
       sentence: `At worst ${formatFigure(result.worstCaseVolumes, 1)} volumes: ${formatFigure(result.worstCaseBarAt30C, 1)} bar in a warm store.`,
       checks: [
         ...result.blocks.map((block) => ({ passed: false, fact: `${block.fact}.`, why: block.why })),
-        ...(held('pressure') ? [] : [{ passed: true, fact: 'The bottle bears the worst case.' }]),
+        ...PASSES.filter(({ codes }) => !codes.some(held)).map(({ fact }) => ({ passed: true, fact })),
       ],
       facts: earliest
-        ? [{ label: 'Earliest the readings can be enough', value: dayInWords(earliest, 'weekday') }]
+        ? [{ label: 'Earliest the readings can be enough', value: dayInWords(earliest, 'short') }]
         : [],
       notes: result.cautions,
     }

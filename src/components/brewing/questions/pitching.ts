@@ -139,7 +139,7 @@ const dose: Question = {
       acts: rehydration && [
         {
           act: `Warm ${formatAmount(Math.max(20, rehydration.waterMl))} mL of water`,
-          more: `to ${show.temperature(rehydration.temperatureC.low)}–${show.temperature(rehydration.temperatureC.high)}. Tap, not distilled.`,
+          more: `to ${show.temperatures(rehydration.temperatureC.low, rehydration.temperatureC.high)}. Tap, not distilled.`,
         },
         { act: 'Sprinkle, wait 20 minutes.', more: 'Then swirl.' },
         { act: 'Cool it to within 10 °C', more: 'of the must before you pitch.' },

@@ -31,7 +31,7 @@ const MARKED: ChoiceAsk = {
 const markedC = (word: string): number => (word === '20' ? 20 : SIXTY_FAHRENHEIT_C)
 const day = (text: string): string => {
   const parsed = parseDay(text)
-  return parsed ? dayInWords(parsed, 'weekday') : text
+  return parsed ? dayInWords(parsed, 'short') : text
 }
 
 const reading: Question = {
@@ -169,7 +169,10 @@ const strength: Question = {
           : []),
         ...(gone
           ? [
-              { label: 'Sugar gone, by the hydrometer', value: `${formatFigure(100 * gone.apparent, 0)} %` },
+              {
+                label: 'Sugar gone, as it reads (alcohol flatters it)',
+                value: `${formatFigure(100 * gone.apparent, 0)} %`,
+              },
               { label: 'Really gone', value: `${formatFigure(100 * gone.real, 0)} %` },
             ]
           : []),
