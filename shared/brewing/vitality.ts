@@ -207,7 +207,7 @@ function viabilityFactors(
     effect: months > few ? 'lowers' : 'little',
   })
   if (facts.bestBefore && dayNumber('bestBefore', facts.bestBefore) < state.on) {
-    factors.push({ text: `Past its best-before day, ${facts.bestBefore}`, effect: 'lowers' })
+    factors.push({ text: 'Past its best-before day', effect: 'lowers' })
   }
   for (const place of STORAGES) {
     const days = state.parts

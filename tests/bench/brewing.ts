@@ -3,7 +3,7 @@ import { correctGravity, fitFermentation, lotBelief, mustFromIngredients } from 
 import { dayOf, instantOf, normal, trueGravity, type Ferment } from '#tests/support/ferments'
 import { seeded } from '#tests/support/random'
 
-export interface BenchLine {
+interface BenchLine {
   name: string
   opsPerSecond: number
   msEach: number
@@ -46,7 +46,7 @@ const LINES = [
 ]
 
 /** The four sums that screens and lists ask for most. */
-export function run(): BenchLine[] {
+function measured(): BenchLine[] {
   const readings = sixtyReadings()
   const on = dayOf(21)
   const outcomes = [
@@ -70,7 +70,7 @@ export function run(): BenchLine[] {
   ]
 }
 
-export function print(lines: readonly BenchLine[]): void {
+function print(lines: readonly BenchLine[]): void {
   for (const line of lines) {
     const aim = line.aimMs === undefined ? '' : `  (aim: under ${line.aimMs} ms)`
     const rate = Math.round(line.opsPerSecond).toLocaleString('en-GB')
@@ -78,4 +78,9 @@ export function print(lines: readonly BenchLine[]): void {
   }
 }
 
-if (process.argv[1] !== undefined && import.meta.url === pathToFileURL(process.argv[1]).href) print(run())
+/** Measures and prints. */
+export function run(): void {
+  print(measured())
+}
+
+if (process.argv[1] !== undefined && import.meta.url === pathToFileURL(process.argv[1]).href) run()

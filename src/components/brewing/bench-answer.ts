@@ -25,10 +25,12 @@ export interface Outcome {
 }
 
 export function showIn(units: Units): Show {
+  const bx = units.gravity === 'bx'
+  const brix = (sg: number) => formatFigure(fromGravity(clampSg(sg), 'bx'), 1)
   const degrees = (celsius: number) => formatFigure(fromCelsius(celsius, units.temperature), 0)
   return {
-    gravity: (sg) =>
-      units.gravity === 'sg' ? formatFigure(sg, 3) : `${formatFigure(fromGravity(clampSg(sg), 'bx'), 1)} °Bx`,
+    gravity: (sg) => (bx ? `${brix(sg)} °Bx` : formatFigure(sg, 3)),
+    gravityFigure: (sg) => (bx ? { text: brix(sg), unit: '°Bx' } : { text: formatFigure(sg, 3), unit: '' }),
     volume: (litres) =>
       units.volume === 'L'
         ? `${formatFigure(litres, 2)} L`

@@ -99,6 +99,7 @@ export interface Given {
 /** Writes quantities in the units chosen, to no more places than they are worth. */
 export interface Show {
   gravity: (sg: number) => string
+  gravityFigure: (sg: number) => { text: string; unit: string }
   volume: (litres: number) => string
   temperature: (celsius: number) => string
   temperatures: (lowC: number, highC: number) => string

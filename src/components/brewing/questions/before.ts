@@ -37,7 +37,7 @@ const must: Question = {
     const lines = given.lines('lines').map(({ ingredient, grams }) => mustLine(ingredient, grams))
     const made = mustFromIngredients({ lines, volumeLitres: given.number('volumeLitres') })
     return {
-      figure: { text: show.gravity(made.og), unit: '' },
+      figure: show.gravityFigure(made.og),
       sentence: `Somewhere from ${show.gravity(made.low)} to ${show.gravity(made.high)} before yeast.`,
       facts: [
         { label: 'Could reach', value: `about ${formatFigure(made.potentialAbv, 1)} %` },

@@ -74,7 +74,7 @@ const reading: Question = {
     const added = (corrected - raw) * 1000
     const small = Math.abs(added) < 0.05
     return {
-      figure: { text: show.gravity(corrected), unit: '' },
+      figure: show.gravityFigure(corrected),
       sentence: small
         ? 'It needs no correction.'
         : `${added > 0 ? 'Add' : 'Take off'} ${formatFigure(Math.abs(added), 1)} points.`,
