@@ -55,6 +55,11 @@ const CUT = 8
 const logWeight = new Float64Array(NODES)
 const nodeOg = new Float64Array(NODES)
 const nodeFg = new Float64Array(NODES)
+/** More readings than a season of twice a day; of a longer list only the last are used. */
+export const MOST_POINTS = 600
+const growth = new Float64Array(MOST_POINTS)
+const weights = new Float64Array(MOST_POINTS)
+const excess = new Float64Array(MOST_POINTS)
 
 interface Box {
   rate: readonly [number, number]
@@ -73,28 +78,39 @@ function scan(shape: Shape, points: readonly Point[], expected: Expectation, box
   const noise = 1 / FIT_ERROR_SG ** 2
   const ogWeight = 1 / OG_PRIOR_SG ** 2
   const fgWeight = 1 / FG_PRIOR_SG ** 2
+  const fall = expected.og - expected.expectedFg
+  const count = Math.min(points.length, MOST_POINTS)
+  for (let n = 0; n < count; n++) {
+    const point = points[n]
+    weights[n] = noise * (point?.weight ?? 0)
+    excess[n] = (point?.gravity ?? 0) - expected.expectedFg
+  }
   for (let i = 0; i < SIDE; i++) {
     const lnRate = step(box.rate, i)
     const rate = Math.exp(lnRate)
+    for (let n = 0; n < count; n++) growth[n] = Math.exp(rate * (points[n]?.t ?? 0))
     const ratePrior = ((lnRate - RATE_PRIOR.mean) / RATE_PRIOR.sd) ** 2
     for (let j = 0; j < SIDE; j++) {
       const delay = step(box.delay, j)
-      // Deviations from what was expected, so that sums of squares lose no digits.
+      // Deviations from what was expected, so that sums of squares lose no digits; e^(rate t) is made once a row.
       let a = ogWeight
       let b = 0
       let c = fgWeight
       let p = 0
       let q = 0
       let yy = 0
-      for (const point of points) {
-        const s = shareLeft(shape, rate * point.t - delay)
-        const w = noise * point.weight
-        const y = point.gravity - (expected.expectedFg + (expected.og - expected.expectedFg) * s)
+      const lag = Math.exp(-delay)
+      for (let n = 0; n < count; n++) {
+        const grown = (growth[n] ?? 0) * lag
+        const s = shape === 'logistic' ? 1 / (1 + grown) : 1 - Math.exp(-1 / grown)
+        const w = weights[n] ?? 0
+        const y = (excess[n] ?? 0) - fall * s
+        const rest = 1 - s
         a += w * s * s
-        b += w * s * (1 - s)
-        c += w * (1 - s) * (1 - s)
+        b += w * s * rest
+        c += w * rest * rest
         p += w * s * y
-        q += w * (1 - s) * y
+        q += w * rest * y
         yy += w * y * y
       }
       const det = a * c - b * b

@@ -1,4 +1,12 @@
-import { fitNodes, gravityAt, placeOf, type Expectation, type Node, type Point } from './ferment-grid.ts'
+import {
+  fitNodes,
+  gravityAt,
+  MOST_POINTS,
+  placeOf,
+  type Expectation,
+  type Node,
+  type Point,
+} from './ferment-grid.ts'
 import {
   DONE_SG,
   FEWEST_READINGS,
@@ -58,6 +66,7 @@ function pointsOf(input: FermentInput, start: number, until: number): Point[] {
     }))
     .filter((point) => point.t + start < until)
     .sort((a, b) => a.t - b.t)
+    .slice(-MOST_POINTS)
 }
 
 /** Readings far off the curve are given less weight, so that one slip of the eye does not move the date. */
