@@ -114,7 +114,7 @@ describe('a member', () => {
       .click()
     await page.getByRole('button', { name: 'Keep it longer' }).click()
     const dialog = page.getByRole('dialog', { name: /longer$/ })
-    await dialog.getByText('3 days', { exact: true }).click()
+    await dialog.getByRole('radio', { name: '3 days' }).check({ force: true })
     await dialog.getByRole('button', { name: 'Keep it until then' }).click()
     await page.getByText(/^Yours until/).waitFor()
   })
