@@ -2,6 +2,7 @@ import { sweepIdempotencyKeys } from '../http/idempotency.ts'
 import { sweepSessions } from '../http/sessions.ts'
 import type { Deps } from '../deps.ts'
 import type { Mailer } from '../mail/mailer.ts'
+import { runLoanRound } from '../services/loans/round.ts'
 import { backUpHourly } from './hourly-backup.ts'
 import { queueNotices } from './queue-notices.ts'
 import { letterSender } from './send-letters.ts'
@@ -21,7 +22,10 @@ const SEND_MS = 2_000
 const DEAD_AFTER_MS = 3 * MINUTE_MS
 
 /** By the minute. Each is safe to run again at any time and catches up by itself, so there is nothing to remember between runs. */
-const BY_MINUTE: [name: string, run: (deps: Deps) => unknown][] = [['notices', queueNotices]]
+const BY_MINUTE: [name: string, run: (deps: Deps) => unknown][] = [
+  ['loans', runLoanRound],
+  ['notices', queueNotices],
+]
 
 const HOURLY: [name: string, run: (deps: Deps) => unknown][] = [
   ['sweep sessions', sweepSessions],
