@@ -21,12 +21,12 @@ export const kitRoutes = (deps: Deps) =>
     giveInduction: ({ params, body }, { user }) =>
       giveInduction(deps, user, params.id, params.kindId, body.givenOn),
     takeInduction: ({ params }) => takeInduction(deps, params.id, params.kindId),
-    listItems: ({ query }) => listItems(deps, query),
+    listItems: ({ query }, { user }) => listItems(deps, user, query),
     addItem: ({ body }, { user }) => addItem(deps, user, body),
-    getItem: ({ params }) => readItem(deps, params.idOrTag),
+    getItem: ({ params }, { user }) => readItem(deps, user, params.idOrTag),
     changeItem: ({ params, body }, { user, version }) => changeItem(deps, user, params.id, version, body),
     itemHistory: ({ params, query }, { user }) => readItemHistory(deps, user, params.id, query),
-    exportItems: () => exportItems(deps),
+    exportItems: (_input, { user }) => exportItems(deps, user),
     importItems: ({ query }, { user, upload }) =>
       importItems(deps, user, upload.bytes, query.dryRun ?? false),
     recordHygiene: ({ params, body }, { user }) => recordHygiene(deps, user, params.id, body),

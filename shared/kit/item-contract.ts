@@ -51,6 +51,16 @@ export const ItemCalibration = z.object({
   calibratedByName: z.string().nullable(),
 })
 
+/** That an item is on loan. */
+export const ItemOut = z.object({
+  dueOn: CalendarDay,
+  overdue: z.boolean(),
+  /** For its borrower and for stewards. */
+  loanId: Id.nullable(),
+  /** For stewards. */
+  borrowerName: z.string().nullable(),
+})
+
 /** One thing with a tag. */
 export const Item = z.object({
   id: Id,
@@ -70,6 +80,8 @@ export const Item = z.object({
   /** Hydrometers: check it in water by this day. */
   calibrationDueOn: CalendarDay.nullable(),
   openFaults: z.int(),
+  /** Null while it is on its shelf, at the sink or in repair. */
+  out: ItemOut.nullable(),
   version: z.int(),
 })
 export type Item = z.output<typeof Item>

@@ -94,4 +94,4 @@ function idOf(ids: Record<string, string>, key: string): string {
   return id
 }
 
-const versionOf = (deps: Deps, tag: string) => readItem(deps, tag).version
+const versionOf = (deps: Deps, tag: string) => readItem(deps, { id: '' }, tag).version

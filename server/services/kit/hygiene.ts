@@ -7,10 +7,9 @@ import { hygieneRecords, items, kinds } from '../../db/schema/kit.ts'
 import { write, type Db, type Tx } from '../../db/open.ts'
 import type { Deps } from '../../deps.ts'
 import { AppError } from '../../errors.ts'
-import type { SignedIn } from '../../http/sessions.ts'
 import { newId } from '../../ids.ts'
 import { addItemEvent } from './item-events.ts'
-import { itemRow } from './item-rows.ts'
+import { itemRow, type ItemReader } from './item-rows.ts'
 import { readItem } from './items.ts'
 
 /**
@@ -20,7 +19,7 @@ import { readItem } from './items.ts'
  */
 export function recordHygiene(
   deps: Deps,
-  user: Pick<SignedIn, 'id'>,
+  user: ItemReader,
   idOrTag: string,
   act: HygieneRequest,
   db: Db | Tx = deps.db,
@@ -53,6 +52,6 @@ export function recordHygiene(
       aboutId: id,
       detail: { ...act, ...(agent !== undefined && { agent }), ...(until && { validUntil: until }) },
     })
-    return { ...readItem(deps, item.id, tx), warnings: hygieneWarnings(act, hygieneAt(item, now)) }
+    return { ...readItem(deps, user, item.id, tx), warnings: hygieneWarnings(act, hygieneAt(item, now)) }
   })
 }

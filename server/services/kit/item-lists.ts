@@ -10,8 +10,8 @@ import { itemsFromCsv, itemsToCsv, type ItemCells } from './item-csv.ts'
 import { selectItems } from './item-rows.ts'
 import { addItem, changeItem } from './items.ts'
 
-export const exportItems = (deps: Deps): FileReply => ({
-  body: itemsToCsv(selectItems(deps, deps.db, undefined, -1)),
+export const exportItems = (deps: Deps, user: SignedIn): FileReply => ({
+  body: itemsToCsv(selectItems(deps, deps.db, user, undefined, -1)),
   type: 'text/csv; charset=utf-8',
   downloadName: 'items.csv',
 })
@@ -39,7 +39,7 @@ export function importItems(deps: Deps, user: SignedIn, bytes: Buffer, dryRun: b
           .map((kind) => [kind.name.toLowerCase(), kind.id]),
       )
       const known = new Map(
-        selectItems(deps, tx, undefined, -1).map((item) => [item.tag.toLowerCase(), item]),
+        selectItems(deps, tx, user, undefined, -1).map((item) => [item.tag.toLowerCase(), item]),
       )
       const seen = new Set<string>()
       for (const { row, tag, ...rest } of read) {

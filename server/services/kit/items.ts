@@ -13,7 +13,7 @@ import type { SignedIn } from '../../http/sessions.ts'
 import { newId } from '../../ids.ts'
 import { faultsOf } from './faults.ts'
 import { addItemEvent } from './item-events.ts'
-import { hygieneFilter, itemIdOf, itemRow, selectItems } from './item-rows.ts'
+import { hygieneFilter, itemIdOf, itemRow, selectItems, type ItemReader } from './item-rows.ts'
 import { containing } from './like.ts'
 
 interface ItemQuery {
@@ -25,12 +25,13 @@ interface ItemQuery {
   cursor?: string | undefined
 }
 
-export function listItems(deps: Deps, query: ItemQuery): Page<Item> {
+export function listItems(deps: Deps, user: ItemReader, query: ItemQuery): Page<Item> {
   const after = query.cursor ? String(decodeCursor(query.cursor, 1)[0]) : undefined
   const part = query.q && containing(query.q)
   const rows = selectItems(
     deps,
     deps.db,
+    user,
     and(
       query.kindId === undefined ? undefined : eq(items.kindId, query.kindId),
       query.status && eq(items.status, query.status),
@@ -44,9 +45,9 @@ export function listItems(deps: Deps, query: ItemQuery): Page<Item> {
 }
 
 /** @throws AppError `not-found` */
-export function readItem(deps: Deps, idOrTag: string, db: Db | Tx = deps.db): ItemDetail {
+export function readItem(deps: Deps, user: ItemReader, idOrTag: string, db: Db | Tx = deps.db): ItemDetail {
   const id = itemIdOf(db, idOrTag)
-  const [item] = selectItems(deps, db, eq(items.id, id), 1)
+  const [item] = selectItems(deps, db, user, eq(items.id, id), 1)
   if (!item) throw notFound('That item')
   return { ...item, faults: faultsOf(db, id), photos: photosOf(db, id) }
 }
@@ -65,7 +66,7 @@ const photosOf = (db: Db | Tx, itemId: string) =>
  * Adds an item. Of a wild-only kind it is wild.
  * @throws AppError `invalid` when the tag is taken or the kind is not there
  */
-export function addItem(deps: Deps, user: Pick<SignedIn, 'id'>, request: ItemRequest): ItemDetail {
+export function addItem(deps: Deps, user: ItemReader, request: ItemRequest): ItemDetail {
   const id = newId()
   const now = deps.clock.now()
   return write(deps.db, (tx) => {
@@ -81,7 +82,7 @@ export function addItem(deps: Deps, user: Pick<SignedIn, 'id'>, request: ItemReq
       happenedAt: now,
       detail: { tag: request.tag },
     })
-    return readItem(deps, id, tx)
+    return readItem(deps, user, id, tx)
   })
 }
 
@@ -137,7 +138,7 @@ export function changeItem(
           ...why,
         },
       })
-    return readItem(deps, before.id, tx)
+    return readItem(deps, user, before.id, tx)
   })
 }
 
