@@ -87,6 +87,8 @@ export const IngredientStock = z.object({
   /** Of the lot to use next; `past` when there is none but old ones. */
   dateState: z.enum(DATE_STATES),
   useBy: CalendarDay.nullable(),
+  /** Up to a dozen lots as they stand there, first expiring first: how full each is, and how its date is. */
+  jars: z.array(z.object({ share: z.number(), dateState: z.enum(DATE_STATES) })),
 })
 export type IngredientStock = z.output<typeof IngredientStock>
 

@@ -1,4 +1,5 @@
 import { parseDay, type CalendarDay } from '../time/day.ts'
+import { currencyDecimals } from '../units/money.ts'
 import type { ImportRow } from './contract.ts'
 import { COST_MAX_MINOR } from './contract.ts'
 import { QUANTITY_MAX } from './quantity.ts'
@@ -64,12 +65,6 @@ export function readNumber(text: string): Read<number> {
   }
   if (!/^\d+(?:[.,]\d+)?$/.test(plain)) return bad(`${text} is not a number.`)
   return good(Number(plain.replace(',', '.')))
-}
-
-/** How many decimals a currency has: 2 for GBP, 0 for JPY. */
-export function currencyDecimals(currency: string): number {
-  return new Intl.NumberFormat('en', { style: 'currency', currency }).resolvedOptions()
-    .maximumFractionDigits as number
 }
 
 /** An amount in whole minor units from text: `12.50` in GBP is 1250. A currency sign before or after is let pass. */

@@ -1,16 +1,11 @@
 import { asc, eq } from 'drizzle-orm'
-import { currencyDecimals } from '#shared/larder/lot-row'
 import { fromMilli } from '#shared/larder/quantity'
 import { ALLERGEN_WORDS, KIND_WORDS } from '#shared/larder/vocabulary'
+import { moneyFigures } from '#shared/units/money'
 import { ingredients, lots } from '../../db/schema/larder.ts'
 import type { Deps } from '../../deps.ts'
 import { csvFile } from '../../http/csv.ts'
 import { readShoppingList } from './shopping.ts'
-
-const money = (minor: number, currency: string) => {
-  const decimals = currencyDecimals(currency)
-  return (minor / 10 ** decimals).toFixed(decimals)
-}
 
 const allergenWords = (allergens: (keyof typeof ALLERGEN_WORDS)[]) =>
   allergens.map((allergen) => ALLERGEN_WORDS[allergen]).join('; ')
@@ -27,7 +22,7 @@ export function exportLots(deps: Deps) {
       ingredient.name,
       fromMilli(lot.quantityMilli),
       ingredient.unit,
-      money(lot.costMinor, lot.currency),
+      moneyFigures(lot.costMinor, lot.currency),
       lot.currency,
       lot.bestBefore,
       lot.openedOn,
@@ -75,7 +70,7 @@ export function exportShoppingList(deps: Deps) {
     line.usable,
     line.reserved,
     line.parLevel,
-    line.estimateMinor === null ? null : money(line.estimateMinor, list.currency),
+    line.estimateMinor === null ? null : moneyFigures(line.estimateMinor, list.currency),
     list.currency,
     allergenWords(line.allergens),
   ])

@@ -1,6 +1,6 @@
-import { and, gt, eq, sql } from 'drizzle-orm'
+import { and, asc, eq, gt, sql } from 'drizzle-orm'
 import type { IngredientStock } from '#shared/larder/contract'
-import { dateState } from '#shared/larder/expiry'
+import { dateState, firstExpiringFirst } from '#shared/larder/expiry'
 import { fromMilli } from '#shared/larder/quantity'
 import { freeQuantity, stockState } from '#shared/larder/stock'
 import type { CalendarDay } from '#shared/time/day'
@@ -16,9 +16,14 @@ export interface Holding {
   lots: number
   pastLots: number
   useBy: CalendarDay | null
+  /** The lots as one sees them standing there, first expiring first. */
+  jars: IngredientStock['jars']
 }
 
-const NOTHING: Holding = { remaining: 0, usable: 0, reserved: 0, lots: 0, pastLots: 0, useBy: null }
+const NOTHING: Holding = { remaining: 0, usable: 0, reserved: 0, lots: 0, pastLots: 0, useBy: null, jars: [] }
+
+/** More than these would not fit on a row. */
+const JARS_SHOWN = 12
 
 /** What a batch has drawn of an ingredient, undone draws taken off. */
 const drawnForBatch = sql<number>`coalesce((
@@ -31,19 +36,19 @@ export const outstandingMilli = sql<number>`max(0, ${reservations.quantityMilli}
 
 /** Holdings by ingredient id, of one ingredient or of all: two statements, however many there are. */
 export function readHoldings(db: Db | Tx, today: CalendarDay, ingredientId?: string) {
-  const past = sql`${lots.useBy} IS NOT NULL AND ${lots.useBy} < ${today}`
-  const stock = db
+  const held = db
     .select({
+      id: lots.id,
       ingredientId: lots.ingredientId,
-      remaining: sql<number>`sum(${lots.remainingMilli})`,
-      past: sql<number>`sum(CASE WHEN ${past} THEN ${lots.remainingMilli} ELSE 0 END)`,
-      lots: sql<number>`count(*)`,
-      pastLots: sql<number>`sum(CASE WHEN ${past} THEN 1 ELSE 0 END)`,
-      useBy: sql<CalendarDay | null>`min(CASE WHEN ${lots.useBy} >= ${today} THEN ${lots.useBy} END)`,
+      remainingMilli: lots.remainingMilli,
+      quantityMilli: lots.quantityMilli,
+      basisMilli: lots.basisMilli,
+      useBy: lots.useBy,
+      openedOn: lots.openedOn,
     })
     .from(lots)
     .where(and(gt(lots.remainingMilli, 0), ingredientId ? eq(lots.ingredientId, ingredientId) : undefined))
-    .groupBy(lots.ingredientId)
+    .orderBy(asc(lots.ingredientId), asc(lots.useBy))
     .all()
   const reserved = db
     .select({ ingredientId: reservations.ingredientId, milli: sql<number>`sum(${outstandingMilli})` })
@@ -52,21 +57,40 @@ export function readHoldings(db: Db | Tx, today: CalendarDay, ingredientId?: str
     .groupBy(reservations.ingredientId)
     .all()
   const found = new Map<string, Holding>()
-  for (const row of stock)
-    found.set(row.ingredientId, {
-      remaining: fromMilli(row.remaining),
-      usable: fromMilli(row.remaining - row.past),
-      reserved: 0,
-      lots: row.lots,
-      pastLots: row.pastLots,
-      useBy: row.useBy,
-    })
+  const groups = new Map<string, HeldLot[]>()
+  for (const lot of held) groups.set(lot.ingredientId, [...(groups.get(lot.ingredientId) ?? []), lot])
+  for (const [id, group] of groups) found.set(id, sumOf(group, today))
   for (const row of reserved)
     found.set(row.ingredientId, {
       ...(found.get(row.ingredientId) ?? NOTHING),
       reserved: fromMilli(row.milli),
     })
   return { of: (id: string): Holding => found.get(id) ?? NOTHING }
+}
+
+type HeldLot = Pick<
+  typeof lots.$inferSelect,
+  'id' | 'remainingMilli' | 'quantityMilli' | 'basisMilli' | 'useBy' | 'openedOn'
+>
+
+function sumOf(group: HeldLot[], today: CalendarDay): Holding {
+  const sum = (list: HeldLot[]) => fromMilli(list.reduce((total, lot) => total + lot.remainingMilli, 0))
+  const good = group.filter((lot) => dateState(lot.useBy, today) !== 'past')
+  const dated = group.map((lot) => ({ ...lot, remaining: fromMilli(lot.remainingMilli) }))
+  return {
+    remaining: sum(group),
+    usable: sum(good),
+    reserved: 0,
+    lots: group.length,
+    pastLots: group.length - good.length,
+    useBy: good.find((lot) => lot.useBy !== null)?.useBy ?? null,
+    jars: firstExpiringFirst(dated, today)
+      .slice(0, JARS_SHOWN)
+      .map((lot) => ({
+        share: lot.remainingMilli / Math.max(lot.quantityMilli, lot.basisMilli),
+        dateState: dateState(lot.useBy, today),
+      })),
+  }
 }
 
 export const parLevelOf = (row: typeof ingredients.$inferSelect) =>
@@ -85,5 +109,6 @@ export function stockReply(holding: Holding, parLevel: number | null, today: Cal
     state: stockState(stock),
     dateState: onlyPast ? 'past' : dateState(holding.useBy, today),
     useBy: holding.useBy,
+    jars: holding.jars,
   }
 }

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest'
+import { moneyFigures, moneyWords } from '#shared/units/money'
 import { cautionsFor } from '#shared/larder/cautions'
 import { Quantity, quantityWords, SomeQuantity } from '#shared/larder/quantity'
 import { statementOf } from '#shared/larder/statement'
@@ -94,5 +95,16 @@ describe('the vocabulary', () => {
     expect(cautionsFor('cleaning')[0]?.text).toMatch(/never mix/i)
     expect(cautionsFor('preservative')[0]?.why).toMatch(/asthma/)
     expect(cautionsFor('honey')).toEqual([])
+  })
+})
+
+describe('money', () => {
+  it.each([
+    [640, 'GBP', '£6.40', '6.40'],
+    [-5, 'GBP', '\u2212£0.05', '-0.05'],
+    [1200, 'JPY', 'JP¥1,200', '1200'],
+    [123456, 'EUR', '€1,234.56', '1234.56'],
+  ])('%d %s', (minor, currency, words, figures) => {
+    expect([moneyWords(minor, currency), moneyFigures(minor, currency)]).toEqual([words, figures])
   })
 })
