@@ -16,3 +16,15 @@ export function moneyFigures(minor: number, currency: string): string {
   const decimals = currencyDecimals(currency)
   return (minor / 10 ** decimals).toFixed(decimals)
 }
+
+/** A price that may be a part of a minor unit: `priceWords(2.3, 'GBP')` is `£0.023`, `priceWords(118.4, 'GBP')` is `£1.18`. */
+export function priceWords(minor: number, currency: string): string {
+  const decimals = currencyDecimals(currency)
+  const maximumFractionDigits = minor < 10 ? decimals + 1 : decimals
+  return new Intl.NumberFormat('en-GB', {
+    style: 'currency',
+    currency,
+    minimumFractionDigits: decimals,
+    maximumFractionDigits,
+  }).format(minor / 10 ** decimals)
+}

@@ -48,6 +48,7 @@ import {
   PrintOutline,
   RefreshOutline,
   RemoveOutline,
+  RestaurantOutline,
   ScanOutline,
   SearchOutline,
   SettingsOutline,
@@ -69,6 +70,7 @@ import type { Component } from 'vue'
 /** Icons by what they mean here, so that one meaning keeps one picture. Add a line for a new meaning. */
 export const ICONS = {
   add: AddOutline,
+  allergen: RestaurantOutline,
   approved: CheckmarkDoneOutline,
   'at-risk': WarningOutline,
   back: ChevronBackOutline,
