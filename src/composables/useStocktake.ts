@@ -46,7 +46,8 @@ export function useStocktake(memberId: string, lots: Ref<readonly Lot[]>) {
 
   function set(lot: Lot, counted: number | undefined) {
     const next = { ...counts.value }
-    if (counted === undefined || !Number.isFinite(counted) || counted < 0) Reflect.deleteProperty(next, lot.id)
+    if (counted === undefined || !Number.isFinite(counted) || counted < 0)
+      Reflect.deleteProperty(next, lot.id)
     else next[lot.id] = { counted, seen: lot.remaining }
     counts.value = next
   }

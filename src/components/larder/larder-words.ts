@@ -19,19 +19,26 @@ function awayWords(today: CalendarDay, on: CalendarDay): string {
 }
 
 /** What to know about the date of a lot; undefined when there is nothing to mind. */
-export function dateMark(dateState: DateState, useBy: CalendarDay | null, today: CalendarDay): Mark | undefined {
+export function dateMark(
+  dateState: DateState,
+  useBy: CalendarDay | null,
+  today: CalendarDay,
+): Mark | undefined {
   if (useBy === null) return undefined
-  if (dateState === 'past') return { state: 'stock-past-date', word: `Past its date, ${awayWords(today, useBy)}` }
+  if (dateState === 'past')
+    return { state: 'stock-past-date', word: `Past its date, ${awayWords(today, useBy)}` }
   if (dateState === 'soon') return { state: 'stock-near-date', word: `Use ${awayWords(today, useBy)}` }
   return undefined
 }
 
-const bySoon = (word: string) => (word === 'today' || word === 'tomorrow' ? word : word.replace('in ', 'within '))
+const bySoon = (word: string) =>
+  word === 'today' || word === 'tomorrow' ? word : word.replace('in ', 'within ')
 
 /** What to know about an ingredient: what it runs short of first, then its dates. */
 export function stockMarks(stock: IngredientStock, today: CalendarDay): Mark[] {
   const marks: Mark[] = []
-  if (stock.state === 'out') marks.push({ state: 'stock-none', word: stock.remaining > 0 ? 'None in date' : 'None left' })
+  if (stock.state === 'out')
+    marks.push({ state: 'stock-none', word: stock.remaining > 0 ? 'None in date' : 'None left' })
   if (stock.state === 'low') marks.push({ state: 'stock-low' })
   if (stock.dateState === 'soon' && stock.useBy)
     marks.push({ state: 'stock-near-date', word: `Use ${bySoon(awayWords(today, stock.useBy))}` })
