@@ -74,7 +74,13 @@ const sanitiser: Question = {
     source: 'Food codes of Utah, California and New York (after the FDA Food Code).',
     range: 'A stock loses strength with age: go by its label and date.',
   },
-  cautions: [NEVER_MIX],
+  cautions: [
+    NEVER_MIX,
+    {
+      caution: 'Goggles and gloves for lye, percarbonate and strong acid.',
+      why: 'They burn skin and eyes. Add the chemical to water, never water to the chemical, and read its label first.',
+    },
+  ],
 }
 
 const glass: Question = {

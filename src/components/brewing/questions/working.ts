@@ -195,6 +195,12 @@ const strength: Question = {
       'OIML R 22, ICUMSA, Nielsen et al. (Balling), HMRC Notice 226 (withdrawn 2025). The kitchen rule from memory.',
     range: 'OG to 1.200. The band holds what no method knows (±0.2 %) and two readings each off by a point.',
   },
+  cautions: [
+    {
+      caution: 'Home-made drink is not for sale.',
+      why: 'In most places selling it, swapping it or raffling it takes a licence, and so does making it stronger by freezing. Check the law where you are.',
+    },
+  ],
 }
 
 const STATUS_WORDS: Record<FermentStatus, NonNullable<Answer['word']>> = {
@@ -254,6 +260,12 @@ const finish: Question = {
     source: 'Speers, Rogers and Smith 2003 (logistic); Gompertz and usual rates from memory.',
     range: 'Three readings over a day or more. It says nothing rather than guess from less.',
   },
+  cautions: [
+    {
+      caution: 'Never seal a vessel that still works.',
+      why: 'A demijohn is thinner than it looks: keep an airlock on it until it has stopped by the hydrometer.',
+    },
+  ],
 }
 
 const bubbles: Question = {
