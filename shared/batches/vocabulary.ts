@@ -64,4 +64,3 @@ export type AgainAnswer = (typeof AGAIN_ANSWERS)[number]
 
 /** A trace kept beside a reading. */
 export const READING_CHANGES = ['edited', 'deleted'] as const
-export type ReadingChange = (typeof READING_CHANGES)[number]

@@ -23,6 +23,12 @@ export const PATHS = {
   batches: '/batches',
   'batch-new': '/batches/new',
   batch: '/batches/:batchId',
+  'batch-recipe': '/batches/:batchId/recipe',
+  'batch-plan': '/batches/:batchId/plan',
+  'batch-bottling': '/batches/:batchId/bottling',
+  'batch-label': '/batches/:batchId/label',
+  'batch-tasting': '/batches/:batchId/tasting',
+  'batch-story': '/batches/:batchId/story',
   yeast: '/yeast',
   'packet-new': '/yeast/new',
   packet: '/yeast/:packetId',
@@ -93,6 +99,9 @@ const page = (name: PageName, component: View, meta: Meta): RouteRecordRaw => ({
   meta,
   props: true,
 })
+
+/** One page with parts: each part has an address of its own. */
+const batchView = () => import('@/views/batches/BatchView.vue')
 
 /** One line a page. Views are loaded when they are first opened. */
 export const routes: RouteRecordRaw[] = [
@@ -196,6 +205,21 @@ export const routes: RouteRecordRaw[] = [
     title: 'Stocktake',
     access: 'steward',
     place: 'larder',
+  }),
+  page('batches', () => import('@/views/batches/BatchListView.vue'), { title: 'Batches' }),
+  page('batch-new', () => import('@/views/batches/BatchFormView.vue'), {
+    title: 'A new batch',
+    place: 'batches',
+  }),
+  page('batch', batchView, { title: 'Batch', place: 'batches' }),
+  page('batch-recipe', batchView, { title: 'Recipe', place: 'batches' }),
+  page('batch-plan', batchView, { title: 'Plan', place: 'batches' }),
+  page('batch-bottling', batchView, { title: 'Bottling', place: 'batches' }),
+  page('batch-label', batchView, { title: 'Label', place: 'batches' }),
+  page('batch-tasting', batchView, { title: 'Tasting', place: 'batches' }),
+  page('batch-story', () => import('@/views/batches/BatchStoryView.vue'), {
+    title: 'Its story',
+    place: 'batches',
   }),
   page('not-found', () => import('@/views/session/NotFoundView.vue'), {
     title: 'Not here',

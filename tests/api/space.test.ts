@@ -59,7 +59,9 @@ describe('the audit trail', () => {
     const app = testApp()
     const { kit } = people(app)
     const sqlite = app.db.$client
-    const note = sqlite.prepare(`INSERT INTO audit_trail SELECT ?, '2031-01-01T00:00:00.000Z', ?, 'x', NULL, 'done', 'y'`)
+    const note = sqlite.prepare(
+      `INSERT INTO audit_trail SELECT ?, '2031-01-01T00:00:00.000Z', ?, 'x', NULL, 'done', 'y'`,
+    )
     expect(checkAudit(app.db)).toEqual({ entries: 0, brokenAt: null })
     note.run(1, kit.id)
     expect(() => app.db.update(auditTrail).set({ outcome: 'changed' }).run()).toThrow()

@@ -1,7 +1,8 @@
-import { eq } from 'drizzle-orm'
+import { and, eq, sql } from 'drizzle-orm'
 import { batches } from '../../db/schema/batches.ts'
 import { members } from '../../db/schema/people.ts'
 import type { Db, Tx } from '../../db/open.ts'
+import type { Deps } from '../../deps.ts'
 import { AppError, notFound } from '../../errors.ts'
 
 export type BatchRow = typeof batches.$inferSelect
@@ -32,3 +33,19 @@ export function ownBatch(db: Db | Tx, memberId: string, batchId: string): BatchR
     throw new AppError('forbidden', `This batch is ${memberName}’s. Copy it to brew your own.`)
   return batch
 }
+
+/**
+ * Marks a batch as changed. With `version`, only if nobody changed it since.
+ * @throws AppError `stale`
+ */
+export function touchBatch(deps: Deps, tx: Tx, batchId: string, version?: number) {
+  const changed = tx
+    .update(batches)
+    .set({ updatedAt: deps.clock.now(), version: sql`version + 1` })
+    .where(and(eq(batches.id, batchId), version === undefined ? undefined : eq(batches.version, version)))
+    .run()
+  if (changed.changes === 0) throw staleBatch()
+}
+
+export const staleBatch = () =>
+  new AppError('stale', 'This batch was changed elsewhere. Load it again, then make your change.')
