@@ -7,6 +7,7 @@ import { faults, items } from '../db/schema/kit.ts'
 import { loans } from '../db/schema/loans.ts'
 import { letters } from '../db/schema/notices.ts'
 import { members } from '../db/schema/people.ts'
+import { yeastLots } from '../db/schema/yeast.ts'
 import type { Tx } from '../db/open.ts'
 import type { Deps } from '../deps.ts'
 import { queueNotice } from './notices.ts'
@@ -45,6 +46,7 @@ function deskCounts(tx: Tx, on: CalendarDay): [what: string, count: number][] {
     ['Bookings at risk', tally(tx, loans, eq(loans.atRisk, true))],
     ['To wash', tally(tx, items, and(eq(items.status, 'in-service'), eq(items.hygiene, 'dirty')))],
     ['Open faults', tally(tx, faults, isNull(faults.resolvedAt))],
+    ['Yeast lots flagged', tally(tx, yeastLots, eq(yeastLots.state, 'flagged'))],
     ['Members whose address refuses letters', refusingAddresses(tx)],
   ]
 }

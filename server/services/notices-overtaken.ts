@@ -3,6 +3,7 @@ import { isLoanReminder } from '#shared/notices/vocabulary'
 import { loans, waitings } from '../db/schema/loans.ts'
 import type { letters } from '../db/schema/notices.ts'
 import type { Tx } from '../db/open.ts'
+import { pitchAnswered } from './yeast/notices.ts'
 
 type Letter = typeof letters.$inferSelect
 
@@ -26,6 +27,8 @@ export function overtaken(tx: Tx, letter: Letter): string | undefined {
     const row = tx.select({ state: waitings.state }).from(waitings).where(eq(waitings.id, aboutId)).get()
     return row?.state === 'offered' ? undefined : 'The offer is over.'
   }
+  if (letter.kind === 'packet-outcome-wanted')
+    return pitchAnswered(tx, aboutId) ? 'It was answered meanwhile.' : undefined
   return undefined
 }
 

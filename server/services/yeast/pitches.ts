@@ -20,6 +20,7 @@ import { newId } from '../../ids.ts'
 import { ownBatch, type BatchRow } from '../batches/access.ts'
 import { lotHistories, visiblePacket, type Loaded } from './fridge.ts'
 import { settleLot } from './lots.ts'
+import { tellOfFlag } from './notices.ts'
 import { moveAmount } from './packets.ts'
 
 /**
@@ -232,7 +233,7 @@ export function reportOutcome(deps: Deps, user: SignedIn, pitchId: string, repor
         reportedAt: now,
       })
       .run()
-    settleLot(deps, tx, row.lotId)
+    if (settleLot(deps, tx, row.lotId)) tellOfFlag(deps, tx, row.lotId)
     return readPitchRow(tx, user, pitchId)
   })
 }
