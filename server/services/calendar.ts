@@ -34,16 +34,16 @@ export function calendarSql({ member, kind }: { member: boolean; kind: boolean }
 SELECT l.id AS loanId, l.kind_id AS kindId, k.name AS kindName, i.tag AS itemTag, l.member_id AS memberId,
   m.name AS memberName, l.from_on AS "from", l.to_on AS "to", l.status, l.at_risk AS atRisk
 FROM (
-  SELECT id FROM loans WHERE from_on BETWEEN @shortFrom AND @to AND to_on >= @from${whose}
+  SELECT rowid AS at FROM loans WHERE from_on BETWEEN @shortFrom AND @to AND to_on >= @from${whose}
   UNION
-  SELECT id FROM loans WHERE julianday(to_on) - julianday(from_on) > 62
+  SELECT rowid FROM loans WHERE julianday(to_on) - julianday(from_on) > 62
     AND from_on BETWEEN @longFrom AND @to AND to_on >= @from${whose}
   UNION
-  SELECT id FROM loans WHERE status = 'out' AND to_on < @from AND @from <= @today${whose}
+  SELECT rowid FROM loans WHERE status = 'out' AND to_on < @from AND @from <= @today${whose}
 ) AS touched
-JOIN loans AS l ON l.id = touched.id
-JOIN kinds AS k ON k.id = l.kind_id
-JOIN members AS m ON m.id = l.member_id
+CROSS JOIN loans AS l ON l.rowid = touched.at
+CROSS JOIN kinds AS k ON k.id = l.kind_id
+CROSS JOIN members AS m ON m.id = l.member_id
 LEFT JOIN items AS i ON i.id = l.item_id
 WHERE l.status IN ('requested', 'approved', 'out', 'returned')
 ORDER BY l.from_on, l.id LIMIT ${ROWS_MAX}`

@@ -3,22 +3,28 @@ import type { HoldingLoanStatus, LoanStatus, RiskReason } from '#shared/loans/vo
 import type { CalendarDay } from '#shared/time/day'
 import type { Instant } from '#shared/time/instant'
 
-/** Every loan somebody has to do something about today. Each part has an index; none looks at history. */
+/**
+ * Every loan somebody has to do something about today. Each part has an index, and none looks at history; CROSS JOIN keeps
+ * the planner from starting anywhere else.
+ */
 export const DESK_LOANS = `
+WITH todo (at) AS MATERIALIZED (
+  SELECT rowid FROM loans WHERE status = 'requested'
+  UNION SELECT rowid FROM loans WHERE status = 'approved' AND from_on <= @today
+  UNION SELECT rowid FROM loans WHERE status = 'out' AND to_on <= @today
+  UNION SELECT rowid FROM loans WHERE at_risk = 1
+  UNION SELECT rowid FROM loans WHERE extension_to IS NOT NULL
+)
 SELECT l.id AS loanId, l.kind_id AS kindId, k.name AS kindName, k.needs_sanitised AS needsSanitised, l.wild,
   l.item_id AS itemId, i.tag AS itemTag, i.shelf, l.member_id AS memberId, m.name AS memberName, m.email AS memberEmail,
   m.phone AS memberPhone, l.from_on AS "from", l.to_on AS "to", l.status, l.approved_on AS approvedOn, l.at_risk AS atRisk,
   l.at_risk_reason AS reason, l.note, l.basket_id AS basketId, l.extension_to AS extensionTo,
   l.extension_asked_at AS extensionAskedAt, l.requested_at AS requestedAt, l.version
-FROM loans AS l
-JOIN kinds AS k ON k.id = l.kind_id
-JOIN members AS m ON m.id = l.member_id
+FROM todo
+CROSS JOIN loans AS l ON l.rowid = todo.at
+CROSS JOIN kinds AS k ON k.id = l.kind_id
+CROSS JOIN members AS m ON m.id = l.member_id
 LEFT JOIN items AS i ON i.id = l.item_id
-WHERE l.status = 'requested'
-  OR (l.status = 'approved' AND l.from_on <= @today)
-  OR (l.status = 'out' AND l.to_on <= @today)
-  OR l.at_risk = 1
-  OR l.extension_to IS NOT NULL
 ORDER BY l.from_on, l.requested_at, l.rowid`
 
 export interface DeskLoanRow {
@@ -50,20 +56,24 @@ export interface DeskLoanRow {
 
 /** What needs washing or mending, and what could be handed out for today's collections: one row an item and open fault. */
 export const DESK_ITEMS = `
+WITH todo (id) AS MATERIALIZED (
+  SELECT id FROM items WHERE hygiene = 'dirty'
+  UNION SELECT item_id FROM faults INDEXED BY faults_open WHERE resolved_at IS NULL
+  UNION SELECT id FROM items
+    WHERE kind_id IN (SELECT kind_id FROM loans WHERE status = 'approved' AND from_on <= @today)
+)
 SELECT i.id AS itemId, i.tag, i.shelf, i.kind_id AS kindId, k.name AS kindName, k.needs_sanitised AS needsSanitised, i.wild,
   i.status, i.hygiene, i.sanitised_until AS sanitisedUntil, i.version, f.id AS faultId, f.summary, f.blocking,
   f.reported_at AS reportedAt,
   EXISTS (SELECT 1 FROM loans AS o WHERE o.item_id = i.id AND o.status = 'out') AS out,
   (
-    SELECT min(l.from_on) FROM loans AS l
+    SELECT min(l.from_on) FROM loans AS l INDEXED BY loans_hold
     WHERE l.blocking = 1 AND l.kind_id = i.kind_id AND l.wild = i.wild AND l.status = 'approved'
   ) AS wantedOn
-FROM items AS i
-JOIN kinds AS k ON k.id = i.kind_id
+FROM todo
+CROSS JOIN items AS i ON i.id = todo.id
+CROSS JOIN kinds AS k ON k.id = i.kind_id
 LEFT JOIN faults AS f ON f.item_id = i.id AND f.resolved_at IS NULL
-WHERE i.hygiene = 'dirty'
-  OR i.id IN (SELECT item_id FROM faults WHERE resolved_at IS NULL)
-  OR i.kind_id IN (SELECT kind_id FROM loans WHERE status = 'approved' AND from_on <= @today)
 ORDER BY i.tag`
 
 export interface DeskItemRow {
@@ -95,8 +105,8 @@ WITH asked (kind_id) AS MATERIALIZED (
 SELECT l.kind_id AS kindId, l.wild, l.id, l.status, l.from_on AS "from", coalesce(l.returned_on, l.to_on) AS "to",
   l.turnaround_days AS turnaroundDays, m.name AS memberName, l.requested_at AS requestedAt, l.rowid AS asked, 0 AS serviceable
 FROM asked
-JOIN loans AS l ON l.kind_id = asked.kind_id AND l.wild IN (0, 1) AND l.blocking = 1
-JOIN members AS m ON m.id = l.member_id
+CROSS JOIN loans AS l INDEXED BY loans_hold ON l.kind_id = asked.kind_id AND l.blocking = 1
+CROSS JOIN members AS m ON m.id = l.member_id
 UNION ALL
 SELECT kind_id, wild, '', 'approved', '', '', 0, '', '', 0, count(*) FROM serviceable_items
 WHERE kind_id IN (SELECT kind_id FROM asked) GROUP BY kind_id, wild

@@ -2,3 +2,5 @@
 import { run as brewing } from './brewing.ts'
 
 await brewing()
+console.table(brewing())
+await loans()
