@@ -1,6 +1,6 @@
 // npm run bench: each domain's measurements, one after the other. Figures are for comparison within one run.
 import { run as brewing } from './brewing.ts'
+import { run as loans } from './loans.ts'
 
-await brewing()
 console.table(brewing())
 await loans()
