@@ -6,6 +6,7 @@ import { suggestItems } from '#shared/loans/suggestion'
 import { addDays, type CalendarDay, earlierDay } from '#shared/time/day'
 import { prepared } from '../db/prepared.ts'
 import type { Deps } from '../deps.ts'
+import { lowStock } from './larder/low-stock.ts'
 import {
   DESK_ITEMS,
   DESK_LOANS,
@@ -45,7 +46,13 @@ export function readDesk(deps: Deps): Desk {
     washing: cut(washing(deps, items, today)),
     faults: cut(openFaults(items)),
     waiting: prepared<object, Rows<'waiting'>>(deps.db, DESK_WAITING).all({ limit: DESK_ROWS_MAX }),
-    lowStock: [],
+    lowStock: cut(
+      lowStock(deps).map(({ left, parLevel, ...row }) => ({
+        ...row,
+        remaining: left,
+        parLevel: parLevel ?? 0,
+      })),
+    ),
   }
 }
 
