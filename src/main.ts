@@ -5,16 +5,15 @@ import './theme/base.css'
 import './theme/controls.css'
 import { createPinia } from 'pinia'
 import { createApp } from 'vue'
-import { speakPlainly } from '#shared/http/messages'
 import { whenSignedOut } from '@/api/client'
 import { useSessionStore } from '@/stores/session'
 import App from './App.vue'
+import { fetchFurtherIcons } from './components/base/icons.ts'
 import { restoreTheme } from './composables/useTheme.ts'
 import { guard } from './router/guards.ts'
 import { makeRouter } from './router/index.ts'
 
 restoreTheme()
-speakPlainly()
 
 const app = createApp(App).use(createPinia())
 const session = useSessionStore()
@@ -29,3 +28,4 @@ whenSignedOut(() => {
 })
 
 app.use(router).mount('#app')
+fetchFurtherIcons()

@@ -11,8 +11,12 @@ import { larderEndpoints } from '#shared/larder/contract'
 import { tabEndpoints } from '#shared/larder/tab-contract'
 import { kitEndpoints } from '#shared/kit/contract'
 import { yeastEndpoints } from '#shared/yeast/contract'
+import { speakPlainly } from '#shared/http/messages'
 import { createClient } from './client.ts'
 import { sessionApi } from './session.ts'
+
+// Here and not in main.ts: who loads the contracts needs their words, and a first visit needs neither.
+speakPlainly()
 
 /** Every call the client can make, by domain. */
 export const api = {

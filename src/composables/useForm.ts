@@ -1,6 +1,15 @@
 import { computed, reactive, ref, shallowRef, toRaw, useId } from 'vue'
-import type { z } from 'zod'
 import { asRefusal, sayWhy } from './refusal.ts'
+
+/** What a form asks of its rule; every zod schema is one. */
+export interface Rule {
+  safeParse: (value: unknown) => { success: boolean; data?: unknown; error?: { issues: readonly Issue[] } }
+}
+type Parsed<R extends Rule> = Extract<ReturnType<R['safeParse']>, { success: true }>['data']
+interface Issue {
+  path: readonly PropertyKey[]
+  message: string
+}
 
 export interface FormError {
   /** Field path, `lines.0.from`; empty when it concerns the whole form. */
@@ -19,7 +28,7 @@ export interface FormError {
  *       <ErrorSummary :errors="form.errors.value" />
  *       <TextField v-bind="form.field('from')" v-model="form.values.from" label="Collect" />
  */
-export function useForm<S extends z.ZodType, V extends object>(schema: S, initial: V) {
+export function useForm<R extends Rule, V extends object>(rule: R, initial: V) {
   const base = useId()
   const values = reactive(structuredClone(toRaw(initial))) as V
   const errors = shallowRef<FormError[]>([])
@@ -39,11 +48,11 @@ export function useForm<S extends z.ZodType, V extends object>(schema: S, initia
   }
 
   /** Runs `act` with the checked values. True when it went through. */
-  async function submit(act: (body: z.output<S>) => Promise<unknown>): Promise<boolean> {
+  async function submit(act: (body: Parsed<R>) => Promise<unknown>): Promise<boolean> {
     if (busy.value) return false
-    const checked = schema.safeParse(cleaned(values))
+    const checked = rule.safeParse(cleaned(values))
     if (!checked.success) {
-      fail(wordIssues(checked.error.issues, schema.safeParse(values).error?.issues ?? []))
+      fail(wordIssues(checked.error?.issues ?? [], rule.safeParse(values).error?.issues ?? []))
       return false
     }
     busy.value = true
@@ -82,7 +91,7 @@ export function useForm<S extends z.ZodType, V extends object>(schema: S, initia
 }
 
 /** What the rule says of an empty text ("Write your e-mail address.") beats what it says of something missing. */
-function wordIssues(missing: z.core.$ZodIssue[], empty: z.core.$ZodIssue[]) {
+function wordIssues(missing: readonly Issue[], empty: readonly Issue[]) {
   return missing.map(({ path, message }) => {
     const at = path.join('.')
     return { path: at, message: empty.find((issue) => issue.path.join('.') === at)?.message ?? message }

@@ -1,12 +1,12 @@
 import { type InjectionKey, type Ref, inject, onScopeDispose, provide, ref, watch } from 'vue'
 import type { CalendarDay } from '#shared/time/day'
-import { dayAt, toInstant } from '#shared/time/instant'
 
 const KEY: InjectionKey<Readonly<Ref<CalendarDay>>> = Symbol('today')
 
 /** In App.vue: today in the time zone of the space, looked at again each minute and when the page comes back. */
 export function provideToday(zone: Ref<string>) {
-  const now = () => dayAt(toInstant(Date.now()), zone.value)
+  // Swedish writes days as we do. The shared clock would bring the whole validation library into the first visit.
+  const now = () => new Intl.DateTimeFormat('sv-SE', { timeZone: zone.value }).format() as CalendarDay
   const today = ref(now())
   const look = () => (today.value = now())
   const timer = setInterval(look, 60_000)
