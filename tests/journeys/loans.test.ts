@@ -1,3 +1,4 @@
+import { addDays } from '#shared/time/day'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { letterSender } from '#server/jobs/send-letters'
 import { startCatcher } from '#server/mail/catcher'
@@ -103,6 +104,40 @@ describe('a member', () => {
     await page.waitForLoadState('networkidle')
     expect(await violations(page)).toEqual([])
     expect(await overflow(page)).toBe(0)
+  })
+
+  it.each([['phone', PHONE] as const, ['desk', WIDE] as const])(
+    'books a demijohn for a month at a %s, without touching the address bar',
+    async (_where, size) => {
+      const page = await house.open(size === PHONE ? 'member7' : 'member4', '/', { size })
+      await page.getByRole('link', { name: 'Kit', exact: true }).first().click()
+      await page.getByRole('link', { name: 'Demijohn 4.5 L, glass' }).click()
+      await page.getByRole('heading', { level: 1, name: 'Demijohn 4.5 L, glass' }).waitFor()
+      const from = addDays(house.clock.today(), 5)
+      await page.getByLabel('Collect').fill(from)
+      await page.getByLabel('Bring back by').fill(addDays(from, 27))
+      await page.getByText('28 days', { exact: true }).waitFor()
+      await page.getByText('Free on every one').waitFor()
+      expect(await violations(page)).toEqual([])
+      expect(await overflow(page)).toBe(0)
+      await page.getByRole('button', { name: 'Ask for this demijohn' }).click()
+      await page.getByText('Asked for. A steward answers by e-mail.').waitFor()
+      await page.getByText('Asked for', { exact: true }).first().waitFor()
+    },
+  )
+
+  it('is refused, and takes the window that is offered', async () => {
+    const page = await house.open('member2', '/kit', { size: PHONE, dark: true })
+    await page.getByRole('link', { name: 'Demijohn 9 L, glass' }).click()
+    const from = addDays(house.clock.today(), 1)
+    await page.getByLabel('Collect').fill(from)
+    await page.getByLabel('Bring back by').fill(addDays(from, 13))
+    await page.getByText('Not free on every one').waitFor()
+    await page.getByRole('button', { name: /^Ask for this/ }).click()
+    await page.getByText('Not free on all of those days').waitFor()
+    expect(await violations(page)).toEqual([])
+    await page.getByRole('button', { name: /^Take / }).click()
+    await page.getByText('Asked for. A steward answers by e-mail.').waitFor()
   })
 
   it('keeps a loan longer when nobody waits for it', async () => {
