@@ -3,6 +3,7 @@ import { space } from '../schema/space.ts'
 import { write, type Tx } from '../open.ts'
 import type { Deps } from '../../deps.ts'
 import { hashPassword } from '../../services/passwords.ts'
+import { seedBatches } from './batches.ts'
 import { seedKit } from './kit.ts'
 import { seedLoans } from './loans.ts'
 import { DEMO_PASSWORD, seedPeople } from './people.ts'
@@ -34,4 +35,4 @@ export async function seedDemo(deps: Deps) {
 }
 
 /** One per domain, in the order they build on each other. */
-const PARTS: ((context: SeedContext) => void)[] = [seedKit, seedLoans, seedYeast, seedLarder]
+const PARTS: ((context: SeedContext) => void)[] = [seedKit, seedLoans, seedYeast, seedLarder, seedBatches]

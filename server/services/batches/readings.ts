@@ -1,5 +1,11 @@
 import { and, asc, desc, eq, isNotNull, isNull, ne } from 'drizzle-orm'
-import type { Hydrometer, Reading, ReadingPatch, ReadingRequest, ReadingTrace } from '#shared/batches/reading-contract'
+import type {
+  Hydrometer,
+  Reading,
+  ReadingPatch,
+  ReadingRequest,
+  ReadingTrace,
+} from '#shared/batches/reading-contract'
 import { correctGravity } from '#shared/brewing/index'
 import type { Instant } from '#shared/time/instant'
 import { readingChanges, readings } from '../../db/schema/batches.ts'
@@ -193,10 +199,7 @@ export function listHydrometers(deps: Deps, memberId: string): { items: Hydromet
     .select({ item: items, kindName: kinds.name, marked: kinds.markedForTemperatureC, loanId: loans.id })
     .from(items)
     .innerJoin(kinds, eq(kinds.id, items.kindId))
-    .leftJoin(
-      loans,
-      and(eq(loans.itemId, items.id), eq(loans.status, 'out'), eq(loans.memberId, memberId)),
-    )
+    .leftJoin(loans, and(eq(loans.itemId, items.id), eq(loans.status, 'out'), eq(loans.memberId, memberId)))
     .where(and(isNotNull(kinds.markedForTemperatureC), ne(items.status, 'lost'), ne(items.status, 'retired')))
     .orderBy(asc(items.tag))
     .all()
@@ -209,5 +212,8 @@ export function listHydrometers(deps: Deps, memberId: string): { items: Hydromet
       calibratedOn: item.calibratedOn,
       inHand: loanId !== null,
     }))
-  return { items: [...rows.filter((row) => row.inHand), ...rows.filter((row) => !row.inHand)], nextCursor: null }
+  return {
+    items: [...rows.filter((row) => row.inHand), ...rows.filter((row) => !row.inHand)],
+    nextCursor: null,
+  }
 }

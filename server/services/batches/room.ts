@@ -4,6 +4,7 @@ import { roomCo2 } from '#shared/brewing/index'
 import { addMinutes } from '#shared/time/instant'
 import { batches } from '../../db/schema/batches.ts'
 import type { Deps } from '../../deps.ts'
+import { getSpace } from '../space.ts'
 import { fitOf } from './forecast.ts'
 import { loadFacts } from './facts.ts'
 
@@ -31,5 +32,10 @@ export function roomLoad(deps: Deps): RoomLoad {
     const pointsPerDay = Math.min(200, Math.max(0, (fit.curve(now) - fit.curve(tomorrow)) * 1000))
     return pointsPerDay > WORKING_POINTS_PER_DAY ? [{ volumeLitres: batch.volumeLitres, pointsPerDay }] : []
   })
-  return { ...roomCo2({ batches: working, ...UNMEASURED }), batches: working.length, ...UNMEASURED }
+  const space = getSpace(deps)
+  const room = {
+    roomM3: space.roomM3 ?? UNMEASURED.roomM3,
+    airChangesPerHour: space.airChangesPerHour ?? UNMEASURED.airChangesPerHour,
+  }
+  return { ...roomCo2({ batches: working, ...room }), batches: working.length, ...room }
 }
