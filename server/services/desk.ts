@@ -1,9 +1,9 @@
-import { blocksUntil, spareByDay } from '#shared/loans/availability'
+import { blocksUntil, type Hold, spareByDay } from '#shared/loans/availability'
 import { type Desk, DESK_ROWS_MAX } from '#shared/loans/desk-contract'
 import { collectBy, daysLate } from '#shared/loans/lateness'
 import { delayedBy } from '#shared/loans/risk'
 import { suggestItems } from '#shared/loans/suggestion'
-import { addDays, type CalendarDay, earlierDay } from '#shared/time/day'
+import { addDays, type CalendarDay, earlierDay, laterDay } from '#shared/time/day'
 import { prepared } from '../db/prepared.ts'
 import type { Deps } from '../deps.ts'
 import { lowStock } from './larder/low-stock.ts'
@@ -68,16 +68,24 @@ const asDeskLoan = (row: DeskLoanRow, today: CalendarDay): Rows<'returns'> => ({
 interface PoolOnDesk {
   serviceable: number
   loans: DeskPoolRow[]
+  holds: Hold[]
 }
 
+const emptyPool = (): PoolOnDesk => ({ serviceable: 0, loans: [], holds: [] })
+
 function readPools(deps: Deps): Map<string, PoolOnDesk> {
+  const today = deps.clock.today()
   const pools = new Map<string, PoolOnDesk>()
   for (const row of prepared<object, DeskPoolRow>(deps.db, DESK_POOLS).all({})) {
     const key = poolKey(row.kindId, row.wild)
-    const pool = pools.get(key) ?? { serviceable: 0, loans: [] }
+    const pool = pools.get(key) ?? emptyPool()
     pools.set(key, pool)
-    if (row.id === '') pool.serviceable = row.serviceable
-    else pool.loans.push(row)
+    if (row.id === '') {
+      pool.serviceable = row.serviceable
+      continue
+    }
+    pool.loans.push(row)
+    pool.holds.push({ from: row.from, blocksUntil: blocksUntil(row, row.turnaroundDays, today) })
   }
   return pools
 }
@@ -92,7 +100,7 @@ function approvals(
     const question =
       row.status === 'requested' ? 'request' : row.extensionTo === null ? undefined : 'extension'
     if (question === undefined) return []
-    const pool = pools.get(poolKey(row.kindId, row.wild)) ?? { serviceable: 0, loans: [] }
+    const pool = pools.get(poolKey(row.kindId, row.wild)) ?? emptyPool()
     const delayed =
       row.extensionTo === null
         ? []
@@ -112,17 +120,13 @@ function approvals(
 
 /** What would still be free on the busiest of the days in question, this loan counted. */
 function freeAfter(row: DeskLoanRow, pool: PoolOnDesk, today: CalendarDay): number {
-  const loans = pool.loans.map((loan) =>
-    loan.id === row.loanId && row.extensionTo ? { ...loan, to: row.extensionTo } : loan,
-  )
-  const own = loans.find(({ id }) => id === row.loanId)
+  const own = pool.loans.find(({ id }) => id === row.loanId)
   if (!own) return 0
-  const holds = loans.map((loan) => ({
-    from: loan.from,
-    blocksUntil: blocksUntil(loan, loan.turnaroundDays, today),
-  }))
-  const days = { from: own.from, to: blocksUntil(own, own.turnaroundDays, today) }
-  return Math.max(0, Math.min(...spareByDay(pool.serviceable, holds, days)))
+  const until = blocksUntil(own, own.turnaroundDays, today)
+  const longer = row.extensionTo === null ? until : addDays(row.extensionTo, own.turnaroundDays)
+  const added = { from: addDays(until, 1), blocksUntil: longer }
+  const days = { from: own.from, to: laterDay(until, longer) }
+  return Math.max(0, Math.min(...spareByDay(pool.serviceable, [...pool.holds, added], days)))
 }
 
 /** What to hand out today, each with the item to take from the shelf. */

@@ -596,6 +596,58 @@ describe('the days that pass', () => {
   })
 })
 
+describe('items that come and go', () => {
+  it('endanger the bookings they leave without, tell their members once, and make it good', async () => {
+    const { kind, items } = makeShelf(app, cast.sam, 1)
+    const item = items[0]!
+    const next = await makeLoan(
+      app,
+      { member: cast.bo, steward: cast.sam },
+      { ...want(4, 6), kindId: kind.id },
+      'approved',
+    )
+    const atRisk = async () => {
+      app.clock.advance({ minutes: 1 })
+      return loanOf(await cast.bo.agent.get(`/api/loans/${next.id}`)).atRisk
+    }
+    const patch = (version: number, change: object) =>
+      cast.sam.agent.patch(`/api/items/${item.id}`).set('If-Match', `"${version}"`).send(change)
+    expect((await patch(1, { status: 'repair' })).status).toBe(200)
+    expect(await atRisk()).toBe(true)
+    expect((await patch(2, { status: 'in-service' })).status).toBe(200)
+    expect(await atRisk()).toBe(false)
+    const report = { summary: 'Stopper stuck fast', blocking: true }
+    const fault = (await cast.ada.agent.post(`/api/items/${item.id}/faults`).send(report)).body as {
+      id: string
+    }
+    expect(await atRisk()).toBe(true)
+    await cast.sam.agent.post(`/api/faults/${fault.id}/resolve`).send({})
+    expect(await atRisk()).toBe(false)
+    expect((await patch(3, { wild: true })).status).toBe(200)
+    expect(await atRisk()).toBe(true)
+    await cast.sam.agent.post('/api/items').send({ tag: 'SPARE-1', kindId: kind.id, hygiene: 'clean' })
+    expect(await atRisk()).toBe(false)
+    const told = lettersTo(cast.bo).filter((letter) => letter !== 'loan-approved')
+    expect(told).toEqual(Array.from({ length: 3 }, () => ['loan-at-risk', 'loan-safe-again']).flat())
+  })
+
+  it('stay as they are while somebody has them', async () => {
+    await makeLoan(
+      app,
+      { member: cast.ada, steward: cast.sam },
+      { ...want(0, 2), itemId: shelf.items[0]!.id },
+      'out',
+    )
+    for (const change of [{ status: 'lost' }, { wild: true }]) {
+      const reply = await cast.sam.agent
+        .patch(`/api/items/${shelf.items[0]!.id}`)
+        .set('If-Match', '"1"')
+        .send(change)
+      expect(problem(reply).code).toBe('wrong-state')
+    }
+  })
+})
+
 describe('looking at loans', () => {
   it('shows members their own, and none of others', async () => {
     const mine = await askFor(cast.ada, want(1, 3))

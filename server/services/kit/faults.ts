@@ -8,6 +8,7 @@ import type { Deps } from '../../deps.ts'
 import { AppError, notFound } from '../../errors.ts'
 import type { SignedIn } from '../../http/sessions.ts'
 import { newId } from '../../ids.ts'
+import { refreshRiskOfItem } from '../loans/risk.ts'
 import { addItemEvent } from './item-events.ts'
 import { itemRow } from './item-rows.ts'
 
@@ -67,6 +68,7 @@ export function reportFault(
       aboutId: id,
       detail: { summary: report.summary, blocking: report.blocking, severity },
     })
+    if (report.blocking) refreshRiskOfItem(tx, deps, item.id)
     return readFault(tx, id)
   })
 }
@@ -90,6 +92,7 @@ export function resolveFault(deps: Deps, user: SignedIn, faultId: string, note: 
       aboutId: faultId,
       detail: { summary: fault.summary, ...(note !== undefined && { note }) },
     })
+    if (fault.blocking) refreshRiskOfItem(tx, deps, fault.itemId)
     return readFault(tx, faultId)
   })
 }

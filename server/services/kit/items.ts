@@ -4,6 +4,7 @@ import type { Item, ItemDetail, ItemPatch, ItemRequest } from '#shared/kit/item-
 import { mayBecome } from '#shared/kit/item-lifecycle'
 import type { HygieneState, ItemStatus } from '#shared/kit/vocabulary'
 import { items, itemPhotos, kinds } from '../../db/schema/kit.ts'
+import { loans } from '../../db/schema/loans.ts'
 import { members } from '../../db/schema/people.ts'
 import { write, type Db, type Tx } from '../../db/open.ts'
 import type { Deps } from '../../deps.ts'
@@ -11,6 +12,7 @@ import { AppError, invalidField, notFound } from '../../errors.ts'
 import { decodeCursor, pageFrom } from '../../http/cursor.ts'
 import type { SignedIn } from '../../http/sessions.ts'
 import { newId } from '../../ids.ts'
+import { refreshRiskOfKind } from '../loans/risk.ts'
 import { faultsOf } from './faults.ts'
 import { addItemEvent } from './item-events.ts'
 import { hygieneFilter, itemIdOf, itemRow, selectItems, type ItemReader } from './item-rows.ts'
@@ -82,6 +84,7 @@ export function addItem(deps: Deps, user: ItemReader, request: ItemRequest): Ite
       happenedAt: now,
       detail: { tag: request.tag },
     })
+    refreshRiskOfKind(tx, deps, request.kindId)
     return readItem(deps, user, id, tx)
   })
 }
@@ -108,6 +111,9 @@ export function changeItem(
     if (kind.wildOnly && patch.wild === false)
       throw invalidField('wild', `Everything of the kind ${kind.name} is kept for wild cultures.`)
     const after = { ...before, ...patch, wild: kind.wildOnly || (patch.wild ?? before.wild) }
+    const moves =
+      after.status !== before.status || after.wild !== before.wild || after.kindId !== before.kindId
+    if (moves) refuseWhileOut(tx, before)
     const changed = tx
       .update(items)
       .set({ ...patch, wild: after.wild, updatedAt: now, version: version + 1 })
@@ -138,6 +144,8 @@ export function changeItem(
           ...why,
         },
       })
+    if (moves)
+      for (const kindId of new Set([before.kindId, after.kindId])) refreshRiskOfKind(tx, deps, kindId)
     return readItem(deps, user, before.id, tx)
   })
 }
@@ -146,6 +154,16 @@ function kindForItem(tx: Tx, kindId: string) {
   const kind = tx.select().from(kinds).where(eq(kinds.id, kindId)).get()
   if (!kind) throw invalidField('kindId', 'There is no such kind of kit.')
   return kind
+}
+
+/** What somebody has in their hands is taken back first: as it is, damaged or lost. */
+function refuseWhileOut(tx: Tx, item: { id: string; tag: string }) {
+  const out = tx
+    .select({ id: loans.id })
+    .from(loans)
+    .where(and(eq(loans.itemId, item.id), eq(loans.status, 'out')))
+    .get()
+  if (out) throw new AppError('wrong-state', `${item.tag} is out on loan. Take it back first.`)
 }
 
 function refuseTakenTag(tx: Tx, tag: string) {

@@ -10,6 +10,7 @@ import { AppError, invalidField, notFound } from '../../errors.ts'
 import { decodeCursor, pageFrom } from '../../http/cursor.ts'
 import type { SignedIn } from '../../http/sessions.ts'
 import { newId } from '../../ids.ts'
+import { refreshRiskOfKind } from '../loans/risk.ts'
 import { addItemEvent } from './item-events.ts'
 import { containing } from './like.ts'
 
@@ -122,7 +123,10 @@ export function changeKind(
       .run()
     if (changed.changes === 0)
       throw new AppError('stale', 'This kind was changed elsewhere. Load it again, then make your change.')
-    if (patch.wildOnly && !before.wildOnly) makeItemsWild(deps, tx, user, id)
+    if (patch.wildOnly && !before.wildOnly) {
+      makeItemsWild(deps, tx, user, id)
+      refreshRiskOfKind(tx, deps, id)
+    }
     return readKind(deps, user, id, tx)
   })
 }
