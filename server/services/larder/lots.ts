@@ -68,7 +68,7 @@ export function lotReply({ lot, ingredient, addedByName }: LotWithIngredient, to
 /** Keys by which lots are walked; undated ones and those without a shelf come last. */
 const SORT_KEY: Record<ListQuery['sort'], SQL<string>> = {
   'use-by': sql<string>`coalesce(${lots.useBy}, '9999-12-31')`,
-  shelf: sql<string>`coalesce(${lots.shelf}, '~') || char(9) || ${ingredients.name}`,
+  shelf: sql<string>`coalesce(${lots.shelf}, '~') || char(9) || ${ingredients.name} || char(9) || coalesce(${lots.useBy}, '9')`,
 }
 
 export function listLots(deps: Deps, query: ListQuery): Page<Lot> {
