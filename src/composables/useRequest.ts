@@ -43,7 +43,7 @@ export function useRequest<T>(load: (signal: AbortSignal) => Promise<T>, options
   onScopeDispose(() => {
     running?.abort()
     running = undefined
-  })
+  }, true)
 
   return {
     data,
