@@ -4,9 +4,11 @@ import type { Fault } from '#shared/kit/fault-contract'
 import type { HygieneResult } from '#shared/kit/care-contract'
 import type { ItemDetail, ItemHistoryEntry } from '#shared/kit/item-contract'
 import type { Kind } from '#shared/kit/kind-contract'
+import type { Loan } from '#shared/loans/contract'
 import { addItemEvent } from '#server/services/kit/item-events'
 import { write } from '#server/db/open'
 import { makeItem, makeItems, makeKind, sanitise } from '#tests/support/makers/kit'
+import { askFor, inDays, makeLoan, makeShelf } from '#tests/support/makers/loans'
 import { people, person } from '#tests/support/people'
 import { testApp } from '#tests/support/test-app'
 
@@ -479,5 +481,53 @@ describe('the history of an item', () => {
     })
     expect(await read(ada)).toMatchObject({ event: 'checked-out', borrowerName: null, aboutId: null })
     expect((await request(app.app).get(`/api/items/${item.id}/history`)).status).toBe(401)
+  })
+})
+
+describe('what leaves the shelf', () => {
+  it('puts the bookings it endangers at risk, and settling it makes them safe again', async () => {
+    const { app, ada, sam } = space()
+    const { kind, items: two } = makeShelf(app, sam, 2)
+    const wanted = { kindId: kind.id, from: inDays(app, 3), to: inDays(app, 9) }
+    const first = await askFor(ada, wanted)
+    const second = await askFor(ada, wanted)
+    const risks = async () => {
+      const reply = await ada.agent.get('/api/loans')
+      return items<Loan>(reply).flatMap((loan) => (loan.atRisk ? [[loan.id, loan.atRiskReason]] : []))
+    }
+    const report = await ada.agent
+      .post(`/api/items/${two[0]!.id}/faults`)
+      .send({ summary: 'Cracked', blocking: true })
+    expect(await risks()).toEqual([[second.id, 'out-of-service']])
+    await sam.agent.post(`/api/faults/${body<Fault>(report).id}/resolve`).send({})
+    expect(await risks()).toEqual([])
+    await sam.agent.patch(`/api/items/${two[1]!.id}`).set('If-Match', '"1"').send({ status: 'repair' })
+    expect(await risks()).toEqual([[second.id, 'out-of-service']])
+    await sam.agent.post('/api/items').send({ tag: 'NEW-1', kindId: kind.id })
+    expect(await risks()).toEqual([])
+    expect(first.atRisk).toBe(false)
+  })
+
+  it('is offered to who waits for it when it comes back', async () => {
+    const { app, ada, bo, sam } = space()
+    const { kind } = makeShelf(app, sam, 1)
+    const wanted = { kindId: kind.id, from: inDays(app, 3), to: inDays(app, 9) }
+    await askFor(ada, wanted)
+    expect((await bo.agent.post('/api/waiting').send(wanted)).status).toBe(201)
+    await sam.agent.post('/api/items').send({ tag: 'NEW-1', kindId: kind.id })
+    expect(items(await bo.agent.get('/api/waiting'))).toMatchObject([{ state: 'offered' }])
+  })
+
+  it('says of an item on loan that it is out, and only to stewards and its borrower which loan', async () => {
+    const { app, ada, bo, sam } = space()
+    const { kind, items: one } = makeShelf(app, sam, 1)
+    const wanted = { kindId: kind.id, from: inDays(app, 0), to: inDays(app, 6) }
+    const loan = await makeLoan(app, { member: ada, steward: sam }, { ...wanted, itemId: one[0]!.id }, 'out')
+    const seenBy = async (who: typeof ada) =>
+      body<ItemDetail>(await who.agent.get(`/api/items/${one[0]!.tag}`)).out
+    const out = { dueOn: wanted.to, overdue: false }
+    expect(await seenBy(sam)).toEqual({ ...out, loanId: loan.id, borrowerName: 'Ada Marsh' })
+    expect(await seenBy(ada)).toEqual({ ...out, loanId: loan.id, borrowerName: null })
+    expect(await seenBy(bo)).toEqual({ ...out, loanId: null, borrowerName: null })
   })
 })

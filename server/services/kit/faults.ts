@@ -8,9 +8,9 @@ import type { Deps } from '../../deps.ts'
 import { AppError, notFound } from '../../errors.ts'
 import type { SignedIn } from '../../http/sessions.ts'
 import { newId } from '../../ids.ts'
-import { refreshRiskOfItem } from '../loans/risk.ts'
 import { addItemEvent } from './item-events.ts'
 import { itemRow } from './item-rows.ts'
+import { poolChanged } from './pool-changed.ts'
 
 const reporter = alias(members, 'reporter')
 const resolver = alias(members, 'resolver')
@@ -68,7 +68,7 @@ export function reportFault(
       aboutId: id,
       detail: { summary: report.summary, blocking: report.blocking, severity },
     })
-    if (report.blocking) refreshRiskOfItem(tx, deps, item.id)
+    if (report.blocking) poolChanged(tx, deps, item.kindId)
     return readFault(tx, id)
   })
 }
@@ -92,7 +92,7 @@ export function resolveFault(deps: Deps, user: SignedIn, faultId: string, note: 
       aboutId: faultId,
       detail: { summary: fault.summary, ...(note !== undefined && { note }) },
     })
-    if (fault.blocking) refreshRiskOfItem(tx, deps, fault.itemId)
+    if (fault.blocking) poolChanged(tx, deps, itemRow(tx, fault.itemId).kindId)
     return readFault(tx, faultId)
   })
 }

@@ -12,10 +12,10 @@ import { AppError, invalidField, notFound } from '../../errors.ts'
 import { decodeCursor, pageFrom } from '../../http/cursor.ts'
 import type { SignedIn } from '../../http/sessions.ts'
 import { newId } from '../../ids.ts'
-import { refreshRiskOfKind } from '../loans/risk.ts'
 import { faultsOf } from './faults.ts'
 import { addItemEvent } from './item-events.ts'
 import { hygieneFilter, itemIdOf, itemRow, selectItems, type ItemReader } from './item-rows.ts'
+import { poolChanged } from './pool-changed.ts'
 import { containing } from './like.ts'
 
 interface ItemQuery {
@@ -84,7 +84,7 @@ export function addItem(deps: Deps, user: ItemReader, request: ItemRequest): Ite
       happenedAt: now,
       detail: { tag: request.tag },
     })
-    refreshRiskOfKind(tx, deps, request.kindId)
+    poolChanged(tx, deps, kind.id)
     return readItem(deps, user, id, tx)
   })
 }
@@ -144,8 +144,7 @@ export function changeItem(
           ...why,
         },
       })
-    if (moves)
-      for (const kindId of new Set([before.kindId, after.kindId])) refreshRiskOfKind(tx, deps, kindId)
+    if (moves) for (const kindId of new Set([before.kindId, after.kindId])) poolChanged(tx, deps, kindId)
     return readItem(deps, user, before.id, tx)
   })
 }

@@ -10,8 +10,8 @@ import { AppError, invalidField, notFound } from '../../errors.ts'
 import { decodeCursor, pageFrom } from '../../http/cursor.ts'
 import type { SignedIn } from '../../http/sessions.ts'
 import { newId } from '../../ids.ts'
-import { refreshRiskOfKind } from '../loans/risk.ts'
 import { addItemEvent } from './item-events.ts'
+import { poolChanged } from './pool-changed.ts'
 import { containing } from './like.ts'
 
 type Reader = Pick<SignedIn, 'id'>
@@ -149,6 +149,7 @@ function makeItemsWild(deps: Deps, tx: Tx, user: Reader, kindId: string) {
     .all()
   for (const { id } of turned)
     addItemEvent(tx, { itemId: id, event: 'became-wild', actorId: user.id, happenedAt: now })
+  poolChanged(tx, deps, kindId)
 }
 
 function refuseTakenName(tx: Tx, name: string) {
