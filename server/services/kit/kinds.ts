@@ -125,7 +125,7 @@ export function changeKind(
       throw new AppError('stale', 'This kind was changed elsewhere. Load it again, then make your change.')
     if (patch.wildOnly && !before.wildOnly) {
       makeItemsWild(deps, tx, user, id)
-      refreshRiskOfKind(tx, deps, id)
+      poolChanged(tx, deps, id)
     }
     return readKind(deps, user, id, tx)
   })
@@ -149,7 +149,6 @@ function makeItemsWild(deps: Deps, tx: Tx, user: Reader, kindId: string) {
     .all()
   for (const { id } of turned)
     addItemEvent(tx, { itemId: id, event: 'became-wild', actorId: user.id, happenedAt: now })
-  poolChanged(tx, deps, kindId)
 }
 
 function refuseTakenName(tx: Tx, name: string) {
