@@ -127,7 +127,7 @@ describe('the steps of a batch', () => {
     expect(await ask<Batch>(ada.agent.get(path))).toMatchObject({
       status: 'fermenting',
       pitchedAt: '2031-05-05T19:00:00.000Z',
-      next: { title: 'Treat the water' },
+      next: { title: 'First feed' },
     })
     expect(await ask<BatchStep>(ada.agent.delete(done))).toMatchObject({ doneAt: null, doneNote: null })
     expect((await ada.agent.delete(done)).status).toBe(409)

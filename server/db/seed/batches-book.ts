@@ -16,6 +16,8 @@ export interface SeedBatch {
   /** When it was written into the book, and the first day of its plan; days from today, negative ones past. */
   writtenDay: number
   startDay?: number
+  /** Days by which what is not ticked came later than its template. */
+  moved?: number
   /** Kinds of steps ticked, each as often as it stands here, in order. */
   done: StepKind[]
   note?: string
@@ -56,6 +58,7 @@ export const BOOK: SeedBatch[] = [
     ],
     writtenDay: -29,
     startDay: -25,
+    moved: 12,
     done: ['prepare', 'prepare', 'prepare', 'pitch', 'feed', 'feed', 'feed'],
     readings: [
       [-25, 1.088, 20],
@@ -85,7 +88,7 @@ export const BOOK: SeedBatch[] = [
     recipe: [['Apple juice, pressed', 4600], closures],
     writtenDay: -13,
     startDay: -12,
-    done: ['prepare', 'prepare', 'pitch'],
+    done: ['prepare', 'prepare', 'pitch', 'feed'],
     readings: [
       [-11, 1.052, 14],
       [-8, 1.046, 13],

@@ -176,14 +176,21 @@ function tickSteps(
     .orderBy(asc(batchSteps.position))
     .all()
   const left = [...entry.done]
+  const ticked = new Set<string>()
   for (const step of steps) {
     const place = left.indexOf(step.kind)
     if (place < 0) continue
     left.splice(place, 1)
+    ticked.add(step.id)
     const then = at((entry.startDay ?? 0) + step.dayOffset, 17)
     const last = left.length === 0 && entry.note
     tickStep(then, user.id, batchId, step.id, { at: then.clock.now(), ...(last && { note: entry.note }) })
   }
+  for (const step of entry.moved ? steps.filter(({ id }) => !ticked.has(id)) : [])
+    tx.update(batchSteps)
+      .set({ plannedOn: step.plannedOn && addDays(step.plannedOn, entry.moved ?? 0) })
+      .where(eq(batchSteps.id, step.id))
+      .run()
   if (left.length > 0) throw new Error(`${entry.request.name} has no step to ${left[0]}`)
 }
 

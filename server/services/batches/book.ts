@@ -60,7 +60,7 @@ export function listBatches(deps: Deps, memberId: string, query: ListQuery): Pag
         memberName,
         mine: batch.memberId === memberId,
         standing: standingReply(batch, facts),
-        next: isOver(batch.status) ? null : nextReply(facts.steps),
+        next: nextReply(batch, facts.steps),
       }
     }),
   }

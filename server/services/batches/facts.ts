@@ -1,13 +1,27 @@
 import { and, asc, eq, inArray, isNull } from 'drizzle-orm'
 import type { BatchCard, Standing } from '#shared/batches/contract'
+import { isOver } from '#shared/batches/lifecycle'
 import { nextStep } from '#shared/batches/plan'
 import { expectedEnd, recipeSums, type RecipeSums } from '#shared/batches/recipe'
 import { standingOf, type BatchReading } from '#shared/batches/standing'
+import type { BatchStatus, StepKind } from '#shared/batches/vocabulary'
 import { day } from '#shared/time/day'
 import { batchSteps, readings, recipeLines } from '../../db/schema/batches.ts'
 import { ingredients } from '../../db/schema/larder.ts'
 import type { Db, Tx } from '../../db/open.ts'
 import type { BatchRow } from './access.ts'
+
+const BEFORE_YEAST: readonly StepKind[] = ['prepare', 'pitch']
+const BEFORE_BOTTLES: readonly StepKind[] = [...BEFORE_YEAST, 'feed', 'rack', 'fine', 'chill', 'bottle']
+/** Kinds of steps a batch in a state has behind it, ticked or not. */
+const PAST: Record<BatchStatus, readonly StepKind[]> = {
+  planned: [],
+  fermenting: BEFORE_YEAST,
+  conditioning: [...BEFORE_YEAST, 'feed'],
+  bottled: BEFORE_BOTTLES,
+  finished: BEFORE_BOTTLES,
+  abandoned: BEFORE_BOTTLES,
+}
 
 /** Lines with what the larder knows of them; a line of one's own knows it itself. */
 const selectLines = (db: Db | Tx, batchIds: readonly string[]) =>
@@ -105,9 +119,11 @@ export function standingReply(batch: BatchRow, facts: BatchFacts): Standing {
   }
 }
 
-/** The next thing to do: by its day, or by its place while nothing is dated. */
-export function nextReply(steps: readonly StepRow[]): BatchCard['next'] {
-  const dated = steps.map((step) => ({
+/** The next thing to do: by its day, or by its place while nothing is dated. What is over or behind it asks for nothing. */
+export function nextReply(batch: BatchRow, steps: readonly StepRow[]): BatchCard['next'] {
+  if (isOver(batch.status)) return null
+  const past: readonly StepKind[] = PAST[batch.status]
+  const dated = steps.filter((step) => !past.includes(step.kind)).map((step) => ({
     ...step,
     // Undated steps keep the order they stand in.
     on: step.plannedOn ?? day('2999-12-31'),

@@ -29,7 +29,7 @@ export function batchReply(db: Db | Tx, memberId: string, batchId: string): Batc
     memberName,
     mine,
     standing: standingReply(batch, facts),
-    next: nextReply(facts.steps),
+    next: nextReply(batch, facts.steps),
     usualFg: gravitiesOf(batch, facts).usualFg ?? null,
     recipe: facts.lines.map(lineReply),
     steps: facts.steps.map((step) => stepReply(batch, facts, step, needs, mine)),
