@@ -174,6 +174,10 @@ function statusOf(points: readonly Point[], nodes: readonly Node[], expected: Ex
   if (level > expected.expectedFg + STUCK_ABOVE_SG) {
     const odds = oddsOfHalt(points, expected)
     if (odds > STUCK_ODDS || (settled && odds > 5)) return 'stuck'
+    // Flat for so long that the curves themselves end here: there is no ferment going on to compare it with.
+    const end = nodes.reduce((sum, node) => sum + node.weight * node.fg, 0)
+    const begun = level < expected.og - LAG_SHARE * (expected.og - expected.expectedFg)
+    if (settled && begun && end > expected.expectedFg + STUCK_ABOVE_SG) return 'stuck'
   }
   const fall = Math.max(1e-9, expected.og - expected.expectedFg)
   const now = nodes.reduce((sum, node) => sum + node.weight * gravityAt(node, last.t), 0)
