@@ -123,12 +123,14 @@ export function standingReply(batch: BatchRow, facts: BatchFacts): Standing {
 export function nextReply(batch: BatchRow, steps: readonly StepRow[]): BatchCard['next'] {
   if (isOver(batch.status)) return null
   const past: readonly StepKind[] = PAST[batch.status]
-  const dated = steps.filter((step) => !past.includes(step.kind)).map((step) => ({
-    ...step,
-    // Undated steps keep the order they stand in.
-    on: step.plannedOn ?? day('2999-12-31'),
-    done: step.doneAt !== null,
-  }))
+  const dated = steps
+    .filter((step) => !past.includes(step.kind))
+    .map((step) => ({
+      ...step,
+      // Undated steps keep the order they stand in.
+      on: step.plannedOn ?? day('2999-12-31'),
+      done: step.doneAt !== null,
+    }))
   const next = nextStep(dated)
   return next ? { id: next.id, kind: next.kind, title: next.title, on: next.plannedOn } : null
 }
