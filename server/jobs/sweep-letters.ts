@@ -1,6 +1,6 @@
 import { and, inArray, lt, ne } from 'drizzle-orm'
 import { addMinutes } from '#shared/time/instant'
-import { letters, unsubscribeTokens } from '../db/schema/notices.ts'
+import { letters, noticeRounds, unsubscribeTokens } from '../db/schema/notices.ts'
 import type { Deps } from '../deps.ts'
 import { SWEPT_WORDS } from '../services/letters.ts'
 
@@ -29,5 +29,6 @@ export function sweepLetters(deps: Deps) {
     .delete(letters)
     .where(and(inArray(letters.status, done), lt(letters.queuedAt, before)))
     .run()
+  deps.db.delete(noticeRounds).where(lt(noticeRounds.doneAt, before)).run()
   deps.db.delete(unsubscribeTokens).where(lt(unsubscribeTokens.createdAt, before)).run()
 }

@@ -39,7 +39,7 @@ export function loanReminder(loan: LoanDates, today: CalendarDay): Reminder<Loan
 }
 
 /** Newest among reminders that have come due after `knownOn` and no later than `today`. */
-export function newest<K extends string>(
+function newest<K extends string>(
   reminders: readonly Reminder<K>[],
   knownOn: CalendarDay,
   today: CalendarDay,
@@ -78,38 +78,17 @@ export function lateDays(late: number): number[] {
   return [...LATE_ON, ...weekly].filter((days) => days <= late)
 }
 
-/** Days before its best-before on which the owner of a packet is told. */
-const PACKET_NOTICE_DAYS = 30
-/** Days after pitching on which an outcome is asked for: a sound start shows within three (common practice). */
-const OUTCOME_AFTER_DAYS = 3
-
-export const packetReminder = (
-  packet: { bestBefore: CalendarDay; knownOn: CalendarDay },
-  today: CalendarDay,
-) =>
-  today > packet.bestBefore
-    ? undefined
-    : newest(
-        [{ kind: 'packet-near-best-before', on: addDays(packet.bestBefore, -PACKET_NOTICE_DAYS) }],
-        packet.knownOn,
-        today,
-      )
-
-export const outcomeReminder = (pitch: { pitchedOn: CalendarDay }, today: CalendarDay) =>
-  newest(
-    [{ kind: 'packet-outcome-wanted', on: addDays(pitch.pitchedOn, OUTCOME_AFTER_DAYS) }],
-    pitch.pitchedOn,
-    today,
-  )
-
-/** The newest planned step of a batch that has come due and is not done; earlier ones it missed are not written about. */
-export const stepReminder = (
+/**
+ * The day of a batch's plan to write about on a reminder day: the newest that has come due and holds a step not done. Days it missed
+ * before that are not written about. `steps`: those not done.
+ */
+export const stepDay = (
   steps: readonly { on: CalendarDay }[],
   knownOn: CalendarDay,
   today: CalendarDay,
-) =>
+): CalendarDay | undefined =>
   newest(
-    steps.map(({ on }) => ({ kind: 'batch-step-due' as const, on })),
+    steps.map(({ on }) => ({ kind: 'step', on })),
     knownOn,
     today,
-  )
+  )?.on

@@ -89,3 +89,9 @@ export const caughtLetters = sqliteTable(
   },
   (t) => [index('caught_letters_age').on(t.receivedAt, t.id)],
 )
+
+/** Mornings on which the digests were written, or there was nothing to write. */
+export const noticeRounds = sqliteTable('notice_rounds', {
+  roundOn: day('round_on').primaryKey(),
+  doneAt: instant('done_at').notNull(),
+})

@@ -17,13 +17,22 @@ export const batchStepDue = (step: BatchFacts & { stepName: string; on: Calendar
 })
 
 export const batchOutlastsLoan = (
-  facts: BatchFacts & { kindName: string; to: CalendarDay; likelyOn: CalendarDay },
+  facts: BatchFacts & {
+    kindName: string
+    to: CalendarDay
+    likelyOn: CalendarDay
+    keepTo: CalendarDay
+    /** Keeping it until then delays nobody and is within the limits. */
+    atOnce: boolean
+  },
 ): Draft => ({
   subject: `${facts.batchName} looks slower than its loan`,
   paragraphs: [
     `By its readings, ${facts.batchName} is likely done about ${longDay(facts.likelyOn)}. ` +
       `The ${facts.kindName} it is in is due back on ${longDay(facts.to)}.`,
-    'Ask for more days now, while it costs nobody anything.',
+    facts.atOnce
+      ? `You can keep it until ${longDay(facts.keepTo)}: ask on the batch page and it is yours at once.`
+      : `Ask to keep it until ${longDay(facts.keepTo)}. Someone else may need it, so a steward decides; the sooner you ask, the better.`,
   ],
-  act: { label: 'Open the batch', path: `/batches/${facts.batchId}` },
+  act: { label: 'Ask for more days', path: `/batches/${facts.batchId}` },
 })
