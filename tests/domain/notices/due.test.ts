@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { lateDays, loanReminder, packetReminder, reminderDay, stepReminder } from '#shared/notices/due'
+import { lateDays, loanReminder, reminderDay, stepDay } from '#shared/notices/due'
 import { day, addDays, type CalendarDay } from '#shared/time/day'
 import type { Instant } from '#shared/time/instant'
 import { LOAN_STATUSES } from '#shared/loans/vocabulary'
@@ -110,21 +110,18 @@ describe('lateness', () => {
   })
 })
 
-describe('packets and steps', () => {
-  it('names a packet once, thirty days before its best-before, and not after it', () => {
-    const packet = { bestBefore: day('2031-07-01'), knownOn: day('2031-01-01') }
-    expect(packetReminder(packet, day('2031-05-31'))).toBeUndefined()
-    expect(packetReminder(packet, day('2031-06-01'))?.on).toBe('2031-06-01')
-    expect(packetReminder(packet, day('2031-07-02'))).toBeUndefined()
-    expect(packetReminder({ ...packet, knownOn: day('2031-06-10') }, day('2031-06-11'))).toBeUndefined()
+describe('a plan', () => {
+  const steps: { on: CalendarDay }[] = ['2031-05-02', '2031-05-06', '2031-05-30'].map((on) => ({
+    on: day(on),
+  }))
+
+  it('is written about for the newest day that has come', () => {
+    expect(stepDay(steps, day('2031-05-01'), day('2031-05-02'))).toBe('2031-05-02')
+    expect(stepDay(steps, day('2031-05-01'), day('2031-05-08'))).toBe('2031-05-06')
   })
 
-  it('writes about the newest step only', () => {
-    const steps: { on: CalendarDay }[] = [
-      { on: day('2031-05-02') },
-      { on: day('2031-05-06') },
-      { on: day('2031-05-30') },
-    ]
-    expect(stepReminder(steps, day('2031-05-01'), day('2031-05-08'))?.on).toBe('2031-05-06')
+  it('is left alone for days that had passed when it was last touched', () => {
+    expect(stepDay(steps, day('2031-05-06'), day('2031-05-08'))).toBeUndefined()
+    expect(stepDay(steps, day('2031-05-06'), day('2031-05-30'))).toBe('2031-05-30')
   })
 })
