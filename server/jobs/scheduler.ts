@@ -3,6 +3,7 @@ import { sweepSessions } from '../http/sessions.ts'
 import type { Deps } from '../deps.ts'
 import type { Mailer } from '../mail/mailer.ts'
 import { runLoanRound } from '../services/loans/round.ts'
+import { sweepPacketPhotos } from '../services/yeast/photo.ts'
 import { backUpHourly } from './hourly-backup.ts'
 import { queueNotices } from './queue-notices.ts'
 import { letterSender } from './send-letters.ts'
@@ -32,6 +33,7 @@ const HOURLY: [name: string, run: (deps: Deps) => unknown][] = [
   ['sweep idempotency keys', sweepIdempotencyKeys],
   ['sweep letters', sweepLetters],
   ['sweep accounts', sweepAccounts],
+  ['sweep packet photos', sweepPacketPhotos],
   ['back up', backUpHourly],
 ]
 

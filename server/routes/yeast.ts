@@ -3,6 +3,7 @@ import type { Deps } from '../deps.ts'
 import { serve } from '../http/serve.ts'
 import { clearLot, withdrawLot } from '../services/yeast/lots.ts'
 import { addPacket, changePacket, copyPacket, discardPacket, readPacket } from '../services/yeast/packets.ts'
+import { addPacketPhoto, readPacketPhoto, removePacketPhoto } from '../services/yeast/photo.ts'
 import { listPitches, pitchInto, readPitch, reportOutcome } from '../services/yeast/pitches.ts'
 import { listPackets, listStrains, packetAnswer } from '../services/yeast/vitality.ts'
 
@@ -14,6 +15,9 @@ export const yeastRoutes = (deps: Deps) =>
     change: ({ params, body }, { user, version }) => changePacket(deps, user, params.id, version, body),
     copy: ({ params, body }, { user }) => copyPacket(deps, user, params.id, body),
     discard: ({ params, body }, { user }) => discardPacket(deps, user, params.id, body.note),
+    addPhoto: ({ params }, { user, upload }) => addPacketPhoto(deps, user, params.id, upload.bytes),
+    photo: ({ params, query }, { user }) => readPacketPhoto(deps, user, params.id, query.size),
+    removePhoto: ({ params }, { user }) => removePacketPhoto(deps, user, params.id),
     vitality: ({ params, query }, { user }) => packetAnswer(deps, user, params.id, query),
     strains: ({ query }, { user }) => listStrains(deps, user, query),
     pitch: ({ params, body }, { user }) => pitchInto(deps, user, params.id, body),

@@ -126,7 +126,7 @@ export function moveAmount(deps: Deps, tx: Tx, user: SignedIn, move: Move) {
  * A packet this member may change.
  * @throws AppError `not-found`, `forbidden` for another's shared one
  */
-function changeablePacket(tx: Tx, user: SignedIn, packetId: string): Loaded {
+export function changeablePacket(tx: Deps['db'] | Tx, user: SignedIn, packetId: string): Loaded {
   const loaded = visiblePacket(tx, user.id, packetId)
   if (!mayChange(user, loaded.packet))
     throw new AppError('forbidden', `This packet is ${loaded.ownerName}’s. Ask them, or a steward.`)
