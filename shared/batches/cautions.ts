@@ -12,7 +12,7 @@ export interface CautionFacts {
   vessel?: { name: string; maxFillTemperatureC: number | null } | undefined
   bottleKind: BottleKind
   carbonated: boolean
-  /** Allergens in what goes in, in words. */
+  /** Allergens in what this step puts in, in words. */
   allergens: readonly string[]
   sulphite: boolean
 }
@@ -48,12 +48,14 @@ export function stepCautions(facts: CautionFacts): StepCaution[] {
         ...sulphiteDust(facts),
       ]
     case 'fine':
-      return [
-        {
-          text: 'Look at what your finings are made of.',
-          why: 'Some are of fish, egg or milk, and someone who drinks this may not bear them.',
-        },
-      ]
+      return facts.allergens.length > 0
+        ? allergens(facts)
+        : [
+            {
+              text: 'Look at what your finings are made of.',
+              why: 'Some are of fish, egg or milk, and someone who drinks this may not bear them.',
+            },
+          ]
     case 'chill':
       return [
         {
@@ -105,7 +107,7 @@ function allergens({ allergens: words }: CautionFacts): StepCaution[] {
   if (words.length === 0) return []
   return [
     {
-      text: `This recipe contains ${words.join(', ')}.`,
+      text: `What goes in here contains ${words.join(', ')}.`,
       why: 'Name it on the label, and clean what it touched before the next batch.',
     },
   ]

@@ -40,7 +40,9 @@ export function chooseKind(
     case 'second-vessel':
       return vessels(pool, wish.volumeLitres)[1] ?? vessels(pool, wish.volumeLitres)[0]
     case 'hydrometer':
-      return pool.find((kind) => kind.category === 'instrument' && kind.markedForTemperatureC !== null)
+      return pool
+        .filter((kind) => kind.category === 'instrument' && kind.markedForTemperatureC !== null)
+        .sort(byMark)[0]
     case 'siphon':
       return named('transfer', /siphon/i) ?? pool.find((kind) => kind.category === 'transfer')
     case 'closer':
@@ -82,6 +84,10 @@ function closer(
       return undefined
   }
 }
+
+/** Marked for 20 °C first: that is what most people read at. */
+const byMark = (a: ChoosableKind, b: ChoosableKind) =>
+  Math.abs((a.markedForTemperatureC ?? 20) - 20) - Math.abs((b.markedForTemperatureC ?? 20) - 20)
 
 /** By capacity; the sort is stable, so of equal ones those for wild cultures stay in front. */
 const bySize = (a: ChoosableKind, b: ChoosableKind) =>

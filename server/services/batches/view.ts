@@ -4,6 +4,7 @@ import type { Bottling, Tasting } from '#shared/batches/bottling-contract'
 import { stepCautions } from '#shared/batches/cautions'
 import type { BatchStep } from '#shared/batches/plan-contract'
 import type { RecipeLineReply } from '#shared/batches/recipe-contract'
+import type { RecipeStage, StepKind } from '#shared/batches/vocabulary'
 import { ALLERGEN_WORDS } from '#shared/larder/vocabulary'
 import { addDays } from '#shared/time/day'
 import { batchSteps, bottlings, readingChanges, stepNeeds, tastings } from '../../db/schema/batches.ts'
@@ -113,8 +114,10 @@ function stepReply(
       },
       bottleKind: batch.bottleKind,
       carbonated: (batch.targetVolumesCo2 ?? 0) > 0,
-      allergens: allergenWords(facts.lines),
-      sulphite: batch.waterTreatment === 'sulphite' || usesSulphite(facts.lines),
+      allergens: allergenWords(linesOf(step.kind, facts.lines)),
+      sulphite:
+        (step.kind === 'prepare' && batch.waterTreatment === 'sulphite') ||
+        usesSulphite(linesOf(step.kind, facts.lines)),
     }),
   }
 }
@@ -125,6 +128,16 @@ export function oneStepReply(db: Db | Tx, batch: BatchRow, stepId: string): Batc
   const step = facts.steps.find(({ id }) => id === stepId) as StepRow
   return stepReply(batch, facts, step, needsOf(db, batch.id), true)
 }
+
+const STAGE_OF_STEP: Partial<Record<StepKind, RecipeStage>> = {
+  prepare: 'must',
+  feed: 'feed',
+  fine: 'fining',
+  bottle: 'bottling',
+}
+/** What a step puts in. */
+const linesOf = (kind: StepKind, lines: readonly LineRow[]) =>
+  lines.filter((line) => line.stage === STAGE_OF_STEP[kind])
 
 const usesSulphite = (lines: readonly LineRow[]) =>
   lines.some((line) => line.kind === 'preservative' || line.allergens.includes('sulphites'))

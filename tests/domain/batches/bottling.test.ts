@@ -185,7 +185,7 @@ describe('cautions stand where the act is', () => {
   })
 
   it('names allergens and sulphite where they go in', () => {
-    expect(words({ ...base, allergens: ['nuts', 'milk'] })).toContain('contains nuts, milk')
+    expect(words({ ...base, allergens: ['nuts', 'milk'] })).toContain('What goes in here contains nuts, milk')
     expect(words({ ...base, sulphite: true })).toContain('Weigh sulphite in fresh air')
   })
 

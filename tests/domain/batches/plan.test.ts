@@ -191,6 +191,7 @@ describe('kit for a role', () => {
     kind('Demijohn 4.5 L', 'vessel', { capacityLitres: 4.5 }),
     kind('Demijohn 4.5 L, wild', 'vessel', { capacityLitres: 4.5, wildOnly: true }),
     kind('Refractometer', 'instrument'),
+    kind('Old hydrometer', 'instrument', { markedForTemperatureC: 15.6 }),
     kind('Hydrometer', 'instrument', { markedForTemperatureC: 20 }),
     kind('Tubing', 'transfer'),
     kind('Siphon', 'transfer'),

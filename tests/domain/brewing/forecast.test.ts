@@ -69,6 +69,17 @@ describe('one ferment', () => {
     expect(forecast.residual).toBeLessThan(0.002)
   })
 
+  test('that lies flat for longer than any ferment is compared with is stuck, and not done', () => {
+    const fall = readAt(cider, [0.3, 1, 2, 3])
+    const flat = [4, 7, 11, 14, 17].map((day) => ({
+      at: instantOf(day),
+      gravity: trueGravity(cider, 3) + 0.0003 * (day % 2),
+    }))
+    const forecast = fitFermentation(asked(cider, [...fall, ...flat], 17))
+    expect(forecast.status).toBe('stuck')
+    expect(forecast.finishOn).toBeUndefined()
+  })
+
   test('says unknown from too little, and gives no date', () => {
     for (const days of [[], [0.5], [0.5, 2], [0.5, 0.7, 0.9]]) {
       const forecast = fitFermentation(asked(cider, readAt(cider, days), 3))
