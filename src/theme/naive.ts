@@ -75,6 +75,5 @@ export function naiveOverrides(dark: boolean): GlobalThemeOverrides {
       borderHover: `1px solid ${tone.ink}`,
       boxShadowFocusError: 'none',
     },
-    Skeleton: { color: tone.well, colorEnd: tone.hair },
   }
 }
