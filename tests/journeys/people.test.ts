@@ -43,7 +43,7 @@ describe('people', () => {
     const guest = await house.open(undefined, linkIn('account-invitation'), { size: PHONE })
     await guest.getByLabel('Choose a password').fill('short')
     await guest.getByRole('button', { name: 'Join' }).click()
-    await guest.getByRole('heading', { name: 'There is a problem' }).waitFor()
+    await guest.getByRole('alert').getByText('Use at least 15 characters').waitFor()
     await guest.getByLabel('Choose a password').fill('nine grey herons over the weir')
     await guest.getByRole('button', { name: 'Join' }).click()
     await guest.waitForURL(house.url + '/')

@@ -1,5 +1,5 @@
 import { lt } from 'drizzle-orm'
-import { addDays, type CalendarDay } from '#shared/time/day'
+import { addDays } from '#shared/time/day'
 import { addMinutes, instantOn } from '#shared/time/instant'
 import { clockAt } from '../../clock.ts'
 import type { Deps } from '../../deps.ts'
