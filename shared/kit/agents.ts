@@ -106,7 +106,6 @@ export const AGENTS = [
     why: 'It works only while it is wet, and not at all where foam alone reaches.',
   },
 ] as const satisfies Agent[]
-export type AgentCode = (typeof AGENTS)[number]['code']
 
 /** The agent a record names: by code or by name, whatever the letter case. */
 export function findAgent(text: string): Agent | undefined {

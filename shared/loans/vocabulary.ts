@@ -43,7 +43,6 @@ export type LoanLimit = (typeof LOAN_LIMITS)[number]
 
 /** `offered` holds a place until a set moment; then the next in line is asked. */
 export const WAITING_STATES = ['waiting', 'offered', 'taken', 'expired', 'left'] as const
-export type WaitingState = (typeof WAITING_STATES)[number]
 
 /** What is counted when a booking is refused, so that the committee sees demand it cannot meet. */
 export const REFUSAL_REASONS = ['not-available', 'over-limit', 'needs-induction'] as const

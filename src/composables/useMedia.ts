@@ -9,6 +9,3 @@ export function useMedia(query: string) {
   onScopeDispose(() => list.removeEventListener('change', update))
   return readonly(holds)
 }
-
-/** Under 640 px: one hand, weeks as small shelves, dialogs as sheets. */
-export const useNarrow = () => useMedia('(max-width: 639.98px)')

@@ -1,6 +1,5 @@
 import { and, eq, sql } from 'drizzle-orm'
 import { bookingsAtRisk } from '#shared/loans/risk'
-import { items } from '../../db/schema/kit.ts'
 import { loans } from '../../db/schema/loans.ts'
 import type { Tx } from '../../db/open.ts'
 import type { Deps } from '../../deps.ts'
@@ -52,12 +51,6 @@ export function refreshRisk(tx: Tx, deps: Deps, pool: Pool) {
         dedupeKey: `loan-safe-again:${loan.id}:${at}`,
       })
   }
-}
-
-/** For the keeper of items: call after an item left or joined service, in the same transaction. */
-export function refreshRiskOfItem(tx: Tx, deps: Deps, itemId: string) {
-  const item = tx.select({ kindId: items.kindId }).from(items).where(eq(items.id, itemId)).get()
-  if (item) refreshRiskOfKind(tx, deps, item.kindId)
 }
 
 /** Both pools of a kind, as far as anyone has booked from them. */

@@ -1,6 +1,5 @@
 import { AGENTS, findAgent } from '#shared/kit/agents'
 import type { Item, ItemHistoryEntry } from '#shared/kit/item-contract'
-import type { Kind } from '#shared/kit/kind-contract'
 import type { FaultSeverity, ItemStatus } from '#shared/kit/vocabulary'
 import { type CalendarDay, parseDay } from '#shared/time/day'
 import { dayAt, type Instant } from '#shared/time/instant'
@@ -23,13 +22,6 @@ export const SEVERITY_WORDS: Record<FaultSeverity, string> = {
 
 export const AGENT_CHOICES = AGENTS.map((agent) => ({ value: agent.code, label: agent.name }))
 export const agentName = (agent: string) => findAgent(agent)?.name ?? agent
-
-export const count = (number: number, one: string, many = `${one}s`) =>
-  `${number} ${number === 1 ? one : many}`
-
-/** `8 here, up to 42 days` */
-export const kindLine = (kind: Pick<Kind, 'items' | 'maxLoanDays'>) =>
-  `${kind.items.total} here, up to ${count(kind.maxLoanDays, 'day')}`
 
 /** What most needs saying about an item: out of service before dirty, dirty before clean. */
 export function itemState(item: Item): StateName {

@@ -64,13 +64,6 @@ export function datesInWords(lot: {
 
 const dateWithYear = (on: CalendarDay) => `${dayInWords(on, 'date')} ${on.slice(0, 4)}`
 
-/** What the thing a lot comes in is called. */
-export function containerWord(kind: IngredientKind, unit: Unit): string {
-  if (kind === 'honey') return 'jar'
-  if (unit === 'each') return 'box'
-  return unit === 'ml' ? 'bottle' : 'bag'
-}
-
 /** Amounts worth a button of their own, smallest first; none above what there is. */
 export function quickAmounts(kind: IngredientKind, unit: Unit, remaining: number): number[] {
   return amountsFor(kind, unit).filter((amount) => amount < remaining)

@@ -38,7 +38,6 @@ const SHELF: Record<string, ShelfKind> = {
   corker: { name: 'Hand corker', category: 'closure', items: 1, selfApproving: true },
   capper: { name: 'Bench capper', category: 'closure', items: 1, selfApproving: true },
 }
-export type ShelfName = keyof typeof SHELF
 
 /** The kinds a batch takes, each under its short name, with items `demijohn-1` and so on. */
 export function makeShelf(app: TestApp): Record<string, string> {
