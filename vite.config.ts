@@ -48,6 +48,7 @@ export default defineConfig({
         extends: true,
         test: {
           name: 'domain',
+          setupFiles: ['tests/support/fixed-seed.ts'],
           include: ['tests/domain/**/*.test.ts'],
           environment: 'node',
         },
@@ -56,6 +57,7 @@ export default defineConfig({
         extends: true,
         test: {
           name: 'api',
+          setupFiles: ['tests/support/fixed-seed.ts'],
           include: ['tests/api/**/*.test.ts'],
           environment: 'node',
           testTimeout: 60_000,
@@ -66,6 +68,7 @@ export default defineConfig({
         extends: true,
         test: {
           name: 'components',
+          setupFiles: ['tests/support/fixed-seed.ts'],
           include: ['tests/components/**/*.test.ts'],
           environment: 'happy-dom',
         },
