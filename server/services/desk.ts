@@ -6,7 +6,7 @@ import { suggestItems } from '#shared/loans/suggestion'
 import { addDays, type CalendarDay, earlierDay, laterDay } from '#shared/time/day'
 import { prepared } from '../db/prepared.ts'
 import type { Deps } from '../deps.ts'
-import { lowStock } from './larder/low-stock.ts'
+import { expiringLots, lowStock } from './larder/low-stock.ts'
 import {
   DESK_ITEMS,
   DESK_LOANS,
@@ -53,6 +53,7 @@ export function readDesk(deps: Deps): Desk {
         parLevel: parLevel ?? 0,
       })),
     ),
+    expiring: cut(expiringLots(deps).flatMap((lot) => (lot.useBy ? [{ ...lot, useBy: lot.useBy }] : []))),
   }
 }
 

@@ -98,6 +98,17 @@ export const DeskLowStock = z.object({
   parLevel: z.number(),
 })
 
+/** A lot to use soon, or one past its date. */
+export const DeskExpiring = z.object({
+  lotId: Id,
+  ingredientId: Id,
+  name: z.string(),
+  unit: z.string(),
+  remaining: z.number(),
+  useBy: CalendarDay,
+  shelf: z.string().nullable(),
+})
+
 export const Desk = z.object({
   today: CalendarDay,
   approvals: z.array(DeskApproval),
@@ -109,6 +120,7 @@ export const Desk = z.object({
   faults: z.array(DeskFault),
   waiting: z.array(DeskWaiting),
   lowStock: z.array(DeskLowStock),
+  expiring: z.array(DeskExpiring),
 })
 export type Desk = z.output<typeof Desk>
 
